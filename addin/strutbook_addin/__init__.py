@@ -1,0 +1,1 @@
+"""The calculation layer between a workbook's tables and the solver."""

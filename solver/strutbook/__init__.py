@@ -1,0 +1,1 @@
+"""Pin-jointed trusses: arrays in, arrays out, SI units."""

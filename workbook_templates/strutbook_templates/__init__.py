@@ -1,0 +1,1 @@
+"""Templates for strutbook workbooks, and the program that builds them."""
