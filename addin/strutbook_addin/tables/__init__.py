@@ -1,0 +1,1 @@
+"""The tables of a workbook: their schema, units, reading and checking."""
