@@ -56,12 +56,12 @@ class Column:
     def expected(self) -> str:
         """What a cell of this column takes, as an error sentence says it."""
         if self.kind is Kind.NUMBER:
-            return self.bound.value
+            return str(self.bound.value)
         if self.kind is Kind.CHOICE:
             return "one of: " + ", ".join(self.choices)
         if self.refers_to:
             return f"a name from the sheet {self.refers_to}"
-        return self.kind.value
+        return str(self.kind.value)
 
 
 @dataclass(frozen=True)
@@ -230,7 +230,7 @@ SUPPORTS = Table(
         Column(
             "Holds",
             Kind.TEXT,
-            "Directions held: x, y, z together as in 'x y', an angle as in '30 deg' (plane), or a vector '0.6, 0.8, 0'.",
+            "Directions held: axes as in 'x y', an angle as in '30 deg' (plane truss), or a vector '0.6, 0.8, 0'.",
             required=True,
         ),
         _number(
@@ -275,7 +275,7 @@ MEMBER_LOADS = Table(
         Column(
             "Per",
             Kind.CHOICE,
-            "What the load is counted on: length of the member, or its projection square to the load; blank is length.",
+            "What the load counts on: the member's length, or its projection square to the load; blank is length.",
             choices=("length", "projection"),
         ),
         _number("wx", Dimension.LINE_LOAD, "Line load along x."),
