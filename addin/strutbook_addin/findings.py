@@ -31,6 +31,7 @@ class Finding:
     sheet: str = ""
     row: int | None = None
     column: int | None = None
+    header: str = ""  #: header of the column, so that the sentence says what the cell is for
 
     @property
     def cell(self) -> str:
@@ -47,7 +48,8 @@ class Finding:
     @property
     def sentence(self) -> str:
         """The finding as one line of text."""
-        place = f"{self.where}: " if self.where else ""
+        header = f" ({self.header})" if self.header else ""
+        place = f"{self.where}{header}: " if self.where else ""
         todo = f" {self.todo}" if self.todo else ""
         return f"{self.level}: {place}{self.what}{todo}"
 
@@ -67,9 +69,10 @@ class Findings:
         sheet: str = "",
         row: int | None = None,
         column: int | None = None,
+        header: str = "",
     ) -> None:
         """Collect one finding; the same one twice counts once."""
-        finding = Finding(level, what, todo, sheet, row, column)
+        finding = Finding(level, what, todo, sheet, row, column, header)
         if finding not in self._items:
             self._items.append(finding)
 

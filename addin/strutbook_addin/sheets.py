@@ -11,7 +11,10 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date, datetime, time, timedelta
 from functools import lru_cache
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
+
+if TYPE_CHECKING:
+    from strutbook_addin.findings import Finding
 
 
 @dataclass(frozen=True)
@@ -58,9 +61,7 @@ class Sheets(Protocol):
         """Values from A1 to the last used cell, as rows; rows may differ in length."""
         ...
 
-    def write(
-        self, sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]
-    ) -> list[Refusal]:
+    def write(self, sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]) -> list[Refusal]:
         """Write a rectangle whose upper left cell is given; None clears a cell.
 
         A sheet that does not exist is made. The look of a cell stays. What cannot be written
@@ -70,6 +71,10 @@ class Sheets(Protocol):
 
     def clear(self, sheet: str, row: int, column: int, rows: int, columns: int) -> list[Refusal]:
         """Remove the values of a rectangle and keep its look."""
+        ...
+
+    def findings(self) -> list[Finding]:
+        """What the host has to say about the sheets read so far (formulas that it evaluated, ...)."""
         ...
 
 

@@ -230,7 +230,7 @@ SUPPORTS = Table(
         Column(
             "Holds",
             Kind.TEXT,
-            "Directions held: axes as in 'x y', an angle as in '30 deg' (plane truss), or a vector '0.6, 0.8, 0'.",
+            "Directions held: axes 'x y', an angle '30 deg' (plane truss), or a vector '0.6, 0.8, 0'.",
             required=True,
         ),
         _number(
@@ -275,7 +275,7 @@ MEMBER_LOADS = Table(
         Column(
             "Per",
             Kind.CHOICE,
-            "What the load counts on: the member's length, or its projection square to the load; blank is length.",
+            "Load on the member's length, or on its projection square to the load; blank is length.",
             choices=("length", "projection"),
         ),
         _number("wx", Dimension.LINE_LOAD, "Line load along x."),

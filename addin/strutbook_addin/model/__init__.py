@@ -1,0 +1,53 @@
+"""From the tables of a workbook to the truss that the solver takes."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import strutbook
+from strutbook_addin.findings import Findings
+from strutbook_addin.model.actions import ActionReader
+from strutbook_addin.model.combinations import Combinations, read_cases, read_combinations
+from strutbook_addin.model.geometry import Geometry, read_geometry
+from strutbook_addin.model.rigidity import read_rigidity
+from strutbook_addin.model.supports import Held, read_supports
+from strutbook_addin.tables.reading import TableData
+
+
+@dataclass(frozen=True, eq=False)
+class Model:
+    """A truss with its actions and combinations, and the names that its user gave."""
+
+    geometry: Geometry
+    held: Held
+    combinations: Combinations
+    truss: strutbook.Truss
+    actions: strutbook.Actions
+
+
+def build_model(tables: dict[str, TableData], findings: Findings) -> Model | None:
+    """Model from the tables by sheet; None (and findings that say why) when it cannot be built."""
+    joints, members = tables["Joints"], tables["Members"]
+    geometry = read_geometry(joints, members, findings)
+    held = read_supports(tables["Supports"], geometry, findings)
+    rigidity = read_rigidity(members, tables.get("Sections"), tables.get("Materials"), findings)
+    load_tables = [tables[sheet] for sheet in ("Loads", "Member loads", "Settlements") if sheet in tables]
+    cases = read_cases(tables.get("Cases"), load_tables)
+    combinations = read_combinations(tables.get("Combinations"), cases, findings)
+    reader = ActionReader(geometry, rigidity, held, cases, findings)
+    reader.add_joint_loads(tables["Loads"])
+    if "Member loads" in tables:
+        reader.add_member_loads(tables["Member loads"])
+    if "Settlements" in tables:
+        reader.add_settlements(tables["Settlements"])
+    reader.add_misfits(members)
+    reader.check_self_weight(members)
+    if findings.stopped:
+        return None
+    truss = strutbook.Truss(
+        joints=geometry.coordinates,
+        members=geometry.ends,
+        supports=strutbook.Supports(held.joint, held.direction, held.stiffness),
+        axial_rigidity=rigidity.axial,
+    )
+    return Model(geometry, held, combinations, truss, reader.actions(truss))

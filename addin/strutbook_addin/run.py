@@ -1,0 +1,118 @@
+"""The one run: read the tables, build the model, solve, write the columns, say what was found.
+
+It knows its host only as `Sheets`, so a file, an open Calc document and an open Excel workbook
+get the same results and the same sentences.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+
+import numpy as np
+
+import strutbook
+from strutbook_addin.digest import digest
+from strutbook_addin.findings import Findings, Level
+from strutbook_addin.model import Model, build_model
+from strutbook_addin.outcome import Outcome
+from strutbook_addin.results import Results, solve
+from strutbook_addin.sheets import Sheets
+from strutbook_addin.tables.reading import TableData
+from strutbook_addin.tables.schema import INPUT_TABLES
+from strutbook_addin.workbook import Workbook, read_workbook
+from strutbook_addin.writing_back import write_results
+
+#: What no run of this version checks; it stands among the findings of every run.
+NOT_CHECKED = (
+    "not checked: strength and buckling of members, deflection limits, connections, bending of members, "
+    "fatigue, fire, vibration, erection, second-order effects."
+)
+CAUTION = "For use by a competent engineer; local codes, national annexes and licensed practice govern."
+#: Largest joint residual that needs no remark.
+RESIDUAL = 1e-9
+
+
+def silent(stage: str) -> None:
+    """Tell nobody which stage a run has reached."""
+
+
+def run(sheets: Sheets, tell: Callable[[str], None] = silent) -> Outcome:
+    """Solve the workbook behind `sheets` and write what was found into it.
+
+    `tell` is called with the name of each stage as it begins.
+    """
+    outcome, workbook = _calculate(sheets, tell)
+    tell("writing results")
+    return write_results(sheets, outcome, workbook)
+
+
+def check(sheets: Sheets, tell: Callable[[str], None] = silent) -> Outcome:
+    """Solve the workbook behind `sheets` and write nothing."""
+    return _calculate(sheets, tell)[0]
+
+
+def _calculate(sheets: Sheets, tell: Callable[[str], None]) -> tuple[Outcome, Workbook]:
+    findings = Findings()
+    tell("reading tables")
+    workbook = read_workbook(sheets, findings)
+    results = None
+    # With every needed table there, names are checked across tables even after errors in cells.
+    if all(table.sheet in workbook.tables for table in INPUT_TABLES if table.required):
+        model = build_model(workbook.tables, findings)
+        tell("solving")
+        if model is not None:
+            results = _solve(model, workbook.tables, findings)
+    if results is not None:
+        _report_solution(results, workbook.tables, findings)
+    findings.add(Level.NOTE, NOT_CHECKED, CAUTION)
+    return Outcome(tuple(findings), digest(workbook.tables), results), workbook
+
+
+def _solve(model: Model, tables: dict[str, TableData], findings: Findings) -> Results | None:
+    """Solve the model; what forbids it becomes findings about joints and members."""
+    joints = tables["Joints"]
+    try:
+        return solve(model)
+    except strutbook.Unstable as unstable:
+        names = model.geometry.joints.names
+        for mechanism in unstable.stability.mechanisms:
+            what, todo = strutbook.describe_mechanism(mechanism, model.truss, names)
+            joints.report(findings, int(mechanism.joints[0]), "Joint", f"the truss can move: {what}.", todo)
+        if model.geometry.dimensions == 3 and not np.ptp(model.truss.joints[:, 2]):
+            joints.report(
+                findings,
+                0,
+                "z",
+                "every joint has the same z, so the truss is flat and nothing holds it across its plane.",
+                "Clear z everywhere for a plane truss.",
+            )
+    except strutbook.StiffnessNeeded as needed:
+        tables["Members"].report(
+            findings,
+            0,
+            "Area",
+            f"the truss is statically indeterminate to degree {needed.indeterminacy}, "
+            "so its forces depend on stiffness.",
+            "Fill in Area and E (or Section and Material) for every member.",
+        )
+    except strutbook.StrutbookError as error:
+        findings.add(Level.STOP, f"the truss could not be solved: {error}.", sheet=joints.layout.sheet)
+    return None
+
+
+def _report_solution(results: Results, tables: dict[str, TableData], findings: Findings) -> None:
+    worst = float(results.analysis.residual.max(initial=0.0))
+    if worst > RESIDUAL:
+        findings.add(
+            Level.LOOK,
+            f"the joints balance only to {worst:.1e} of the largest load; {RESIDUAL:.0e} is usual.",
+            "The truss may be close to a mechanism; look at its stiffnesses and geometry.",
+            sheet=tables["Joints"].layout.sheet,
+        )
+    if results.displacements is None:
+        findings.add(
+            Level.NOTE,
+            "no member has an area and a modulus, so forces come from statics alone, without displacements.",
+            "Fill in Area and E, or Section and Material, for displacements.",
+            sheet=tables["Members"].layout.sheet,
+        )

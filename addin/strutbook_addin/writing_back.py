@@ -1,0 +1,174 @@
+"""What a run writes: result columns, result sheets, the stamp on `Job`, the findings."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from datetime import UTC, datetime
+from importlib.metadata import version
+
+import numpy as np
+
+from strutbook_addin.findings import Finding, Findings
+from strutbook_addin.outcome import Outcome
+from strutbook_addin.results import Results
+from strutbook_addin.sheets import Formula, Grid, Sheets, Written
+from strutbook_addin.tables.headers import Layout
+from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
+from strutbook_addin.tables.schema import (
+    DISPLACEMENTS,
+    FINDINGS,
+    FORCES,
+    JOB,
+    REACTIONS,
+    Column,
+    Kind,
+    Table,
+    normal,
+)
+from strutbook_addin.tables.units import Dimension, Unit, UnitProblem, split_header, unit_of
+from strutbook_addin.tables.writing import TableWriter, cells, header_text
+from strutbook_addin.workbook import Workbook
+
+_COMBINATION_SHEETS = (FORCES, REACTIONS, DISPLACEMENTS)
+_US_UNITS = ("ft", "in", "inch", "kip", "kips", "lb", "lbs", "lbf")
+
+
+def write_results(sheets: Sheets, outcome: Outcome, workbook: Workbook) -> Outcome:
+    """Write results (or clear them, where the run could not solve) and the findings.
+
+    Returns the outcome with the findings that writing itself added.
+    """
+    findings = Findings()
+    findings.extend(list(outcome.findings))
+    writer = TableWriter(sheets, default_units(workbook), findings)
+    if outcome.results is None:
+        _clear(writer, workbook)
+    else:
+        _fill(writer, outcome.results, workbook)
+    outcome = replace(outcome, findings=tuple(findings))
+    _write_job(writer, outcome, workbook)
+    outcome = replace(outcome, findings=tuple(findings))
+    _write_findings(writer, outcome.findings, workbook)
+    return outcome
+
+
+def default_units(workbook: Workbook) -> dict[Dimension, Unit]:
+    """Units of headers that a run makes: the force unit of `Loads`; displacements in mm, or in."""
+    loads, joints = workbook.tables.get("Loads"), workbook.tables.get("Joints")
+    forces = [] if loads is None else list(loads.layout.units.values())
+    lengths = [] if joints is None else list(joints.layout.units.values())
+    customary = any(unit.text in _US_UNITS for unit in forces or lengths)
+    return {
+        Dimension.FORCE: forces[0] if forces else unit_of("kip" if customary else "kN", Dimension.FORCE),
+        Dimension.LENGTH: unit_of("in" if customary else "mm", Dimension.LENGTH),
+    }
+
+
+def _fill(writer: TableWriter, results: Results, workbook: Workbook) -> None:
+    joints, members, supports = (workbook.tables[sheet] for sheet in ("Joints", "Members", "Supports"))
+    for data, columns in (
+        (joints, results.joint_columns()),
+        (members, results.member_columns(joints.layout.units["x"])),
+        (supports, results.support_columns(supports.rows)),
+    ):
+        grid = workbook.grids[data.layout.table.sheet]
+        writer.clear_results(data.layout, grid, keep={column.name for column in columns})
+        writer.fill(data.layout, grid, columns)
+    sheets = results.sheets()
+    for table in _COMBINATION_SHEETS:
+        layout, grid = _result_sheet(table, workbook)
+        if table.sheet in sheets:
+            fill_sheet(writer, layout, grid, sheets[table.sheet])
+        else:
+            clear_sheet(writer, layout, grid)
+
+
+def _clear(writer: TableWriter, workbook: Workbook) -> None:
+    """No old number may stand beside inputs from which it does not follow."""
+    for sheet, data in workbook.tables.items():
+        writer.clear_results(data.layout, workbook.grids[sheet])
+    for table in _COMBINATION_SHEETS:
+        clear_sheet(writer, *_result_sheet(table, workbook))
+
+
+def _result_sheet(table: Table, workbook: Workbook) -> tuple[Layout, Grid]:
+    grid = workbook.grids.get(table.sheet, [])
+    return result_layout(table, workbook.names.get(table.sheet, table.sheet), grid), grid
+
+
+def _write_job(writer: TableWriter, outcome: Outcome, workbook: Workbook) -> None:
+    """Stamp the sheet `Job`: what was solved, when, by which version, from which inputs."""
+    sheet, grid = workbook.names.get(JOB.sheet, JOB.sheet), workbook.grids.get(JOB.sheet, [])
+    rows: dict[str, tuple[int, str]] = {}
+    for row, values in enumerate(grid):
+        if values and isinstance(values[0], str):
+            rows.setdefault(normal(split_header(values[0])[0]), (row, values[0]))
+    next_row = len(grid)
+    for column in JOB.results:
+        row, label = rows.get(normal(column.name), (next_row, ""))
+        unit = _label_unit(label, column, writer)
+        if not label:
+            next_row += 1
+            writer.write(sheet, row, 0, [[header_text(column.name, unit)]])
+        writer.write(sheet, row, 1, [[_job_value(column, outcome, unit)]])
+
+
+def _label_unit(label: str, column: Column, writer: TableWriter) -> Unit | None:
+    if column.dimension is None:
+        return None
+    text = split_header(label)[1]
+    if text is not None:
+        try:
+            return unit_of(text, column.dimension)
+        except UnitProblem:
+            # The value would be wrong under this label, so none is written: see `_job_value`.
+            return Unit(text, float("nan"))
+    return writer.default_unit(column.dimension)
+
+
+def _job_value(column: Column, outcome: Outcome, unit: Unit | None) -> Written:
+    results = outcome.results
+    if column.name == "Outcome":
+        return outcome.sentence
+    if results is None:
+        return None
+    if column.kind is Kind.TEXT:
+        return {
+            "Solved at": datetime.now(UTC).strftime("%Y-%m-%d %H:%M:%S UTC"),
+            "Solved by": f"strutbook {version('strutbook')}",
+            "Inputs": outcome.digest,
+        }[column.name]
+    value = {
+        "Static indeterminacy": float(results.analysis.stability.indeterminacy),
+        "Joint residual": float(results.analysis.residual.max(initial=0.0)),
+        "Largest tension": float(results.forces.max(initial=0.0)),
+        "Largest compression": float(results.forces.min(initial=0.0)),
+        "Largest displacement": results.largest_displacement(),
+    }[column.name]
+    return cells(np.array([value]), unit)[0]
+
+
+def _write_findings(writer: TableWriter, findings: tuple[Finding, ...], workbook: Workbook) -> None:
+    layout, grid = _result_sheet(FINDINGS, workbook)
+    rows = [
+        [finding.level.value, _link(finding, workbook), _what(finding), finding.todo] for finding in findings
+    ]
+    for place, schema in enumerate(FINDINGS.columns):
+        column = layout.columns[schema.name]
+        values: list[list[Written]] = [[schema.name], *([row[place] or None] for row in rows)]
+        writer.write(layout.sheet, layout.header_row, column, values)
+        below = layout.header_row + len(values)
+        writer.clear(layout.sheet, below, column, len(grid) - below)
+
+
+def _what(finding: Finding) -> str:
+    return f"{finding.header}: {finding.what}" if finding.header else finding.what
+
+
+def _link(finding: Finding, workbook: Workbook) -> Written:
+    """Link to the cell, where the workbook has its sheet."""
+    if not finding.cell or finding.sheet not in workbook.names.values():
+        return finding.where
+    quoted = finding.sheet.replace("'", "''").replace('"', '""')
+    text = finding.where.replace('"', '""')
+    return Formula(f'=HYPERLINK("#\'{quoted}\'!{finding.cell}","{text}")', finding.where)
