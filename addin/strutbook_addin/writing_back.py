@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from dataclasses import replace
 from datetime import UTC, datetime
-from importlib.metadata import version
 
 import numpy as np
 
@@ -21,12 +20,12 @@ from strutbook_addin.tables.schema import (
     JOB,
     REACTIONS,
     Column,
-    Kind,
     Table,
     normal,
 )
 from strutbook_addin.tables.units import Dimension, Unit, UnitProblem, split_header, unit_of
 from strutbook_addin.tables.writing import TableWriter, cells, header_text
+from strutbook_addin.version import __version__
 from strutbook_addin.workbook import Workbook
 
 _COMBINATION_SHEETS = (FORCES, REACTIONS, DISPLACEMENTS)
@@ -104,13 +103,16 @@ def _write_job(writer: TableWriter, outcome: Outcome, workbook: Workbook) -> Non
         if values and isinstance(values[0], str):
             rows.setdefault(normal(split_header(values[0])[0]), (row, values[0]))
     next_row = len(grid)
+    stamp = _stamp(outcome)
     for column in JOB.results:
         row, label = rows.get(normal(column.name), (next_row, ""))
         unit = _label_unit(label, column, writer)
         if not label:
             next_row += 1
             writer.write(sheet, row, 0, [[header_text(column.name, unit)]])
-        writer.write(sheet, row, 1, [[_job_value(column, outcome, unit)]])
+        value = stamp.get(column.name)
+        number = isinstance(value, float)
+        writer.write(sheet, row, 1, [[cells(np.array([value]), unit)[0] if number else value]])
 
 
 def _label_unit(label: str, column: Column, writer: TableWriter) -> Unit | None:
@@ -121,31 +123,27 @@ def _label_unit(label: str, column: Column, writer: TableWriter) -> Unit | None:
         try:
             return unit_of(text, column.dimension)
         except UnitProblem:
-            # The value would be wrong under this label, so none is written: see `_job_value`.
+            # No value stands under a label that it would not suit.
             return Unit(text, float("nan"))
-    return writer.default_unit(column.dimension)
+    return writer.default_units[column.dimension]
 
 
-def _job_value(column: Column, outcome: Outcome, unit: Unit | None) -> Written:
+def _stamp(outcome: Outcome) -> dict[str, float | str]:
+    """Values of the labels of `Job`, in SI units; a run that could not solve has an outcome only."""
     results = outcome.results
-    if column.name == "Outcome":
-        return outcome.sentence
     if results is None:
-        return None
-    if column.kind is Kind.TEXT:
-        return {
-            "Solved at": datetime.now(UTC).strftime("%Y-%m-%d %H:%M:%S UTC"),
-            "Solved by": f"strutbook {version('strutbook')}",
-            "Inputs": outcome.digest,
-        }[column.name]
-    value = {
+        return {"Outcome": outcome.sentence}
+    return {
+        "Solved at": datetime.now(UTC).strftime("%Y-%m-%d %H:%M:%S UTC"),
+        "Solved by": f"strutbook {__version__}",
+        "Inputs": outcome.digest,
+        "Outcome": outcome.sentence,
         "Static indeterminacy": float(results.analysis.stability.indeterminacy),
         "Joint residual": float(results.analysis.residual.max(initial=0.0)),
         "Largest tension": float(results.forces.max(initial=0.0)),
         "Largest compression": float(results.forces.min(initial=0.0)),
         "Largest displacement": results.largest_displacement(),
-    }[column.name]
-    return cells(np.array([value]), unit)[0]
+    }
 
 
 def _write_findings(writer: TableWriter, findings: tuple[Finding, ...], workbook: Workbook) -> None:

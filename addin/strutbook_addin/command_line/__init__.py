@@ -6,7 +6,8 @@ import argparse
 import sys
 from collections.abc import Callable, Sequence
 from importlib import import_module
-from importlib.metadata import version
+
+from strutbook_addin.version import __version__
 
 EXIT_STATUSES = (
     "Exit status: 0 everything solved and passed; 1 solved, something failed a check; "
@@ -32,7 +33,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
         description="Pin-jointed trusses calculated inside a spreadsheet.",
         epilog=f"{EXIT_STATUSES} {CAUTION}",
     )
-    parser.add_argument("--version", action="version", version=f"strutbook {version('strutbook')}")
+    parser.add_argument("--version", action="version", version=f"strutbook {__version__}")
     verbs = parser.add_subparsers(dest="verb", metavar="VERB", required=True)
     works: dict[str, Callable[[argparse.Namespace], int]] = {}
     for verb, help_line in VERBS.items():

@@ -40,12 +40,13 @@ def fill_sheet(writer: TableWriter, layout: Layout, grid: Grid, sheet: ResultShe
     former = _former_columns(layout, grid)
     next_column = last_used_column(layout, grid) + 1
     top = layout.header_row - 1
-    default = writer.default_unit(sheet.dimension)
-    units = {text for _, unit in former.values() if unit for text in (unit.text,)} or {default.text}
+    default = writer.default_units[sheet.dimension]
+    units = {unit.text for _, unit in former.values() if unit} or {default.text}
     for place, schema in enumerate(layout.table.columns):
         line = f"{sheet.title}, in {' and '.join(sorted(units))}" if place == 0 else None
         values: list[list[Written]] = [] if line is None else [[line]]
-        values += [[schema.name], *([key[place]] for key in sheet.keys)]
+        values.append([schema.name])
+        values.extend([key[place]] for key in sheet.keys)
         first = top + (line is None)
         column = layout.columns[schema.name]
         writer.write(layout.sheet, first, column, values)

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from enum import Enum
-from functools import cached_property
+from functools import cached_property, lru_cache
 
 from strutbook_addin.tables.units import Dimension
 
@@ -105,6 +105,7 @@ class Table:
         return self.by_normal_name[normal(name)]
 
 
+@lru_cache(maxsize=4096)
 def normal(name: str) -> str:
     """Form in which names of sheets and headers are compared: no case, spaces or underscores.
 

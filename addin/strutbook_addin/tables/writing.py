@@ -33,7 +33,7 @@ class TableWriter:
 
     def __init__(self, sheets: Sheets, default_units: dict[Dimension, Unit], findings: Findings) -> None:
         self._sheets = sheets
-        self._default_units = default_units
+        self.default_units = default_units
         self._findings = findings
 
     def write(self, sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]) -> None:
@@ -71,7 +71,7 @@ class TableWriter:
             header: list[list[Written]] = []
             if column is None:
                 column, next_column = next_column, next_column + 1
-                unit = result.unit or self.default_unit(result.dimension)
+                unit = result.unit or (self.default_units[result.dimension] if result.dimension else None)
                 header = [[header_text(result.name, unit)]]
             values = [[value] for value in cells(result.values, unit)]
             self.write(layout.sheet, layout.first_row - len(header), column, [*header, *values])
@@ -89,10 +89,6 @@ class TableWriter:
             if place is not None and column.name not in keep:
                 rows = layout.rows + leftover_rows(layout, grid, place, layout.rows)
                 self.clear(layout.sheet, layout.first_row, place, rows)
-
-    def default_unit(self, dimension: Dimension | None) -> Unit | None:
-        """Unit of a header that a run makes."""
-        return self._default_units[dimension] if dimension else None
 
 
 def header_text(name: str, unit: Unit | None) -> str:
