@@ -28,21 +28,21 @@ MEMBERS_DRAWN = 600
 #: Rows of the chart ranges: two ends and a gap for each member.
 DATA_ROWS = 3 * MEMBERS_DRAWN
 #: Frame in which everything is drawn, in chart units; the plot areas have the same ratio of sides.
-FRAME = (100.0, 36.0)
+FRAME = (100.0, 50.0)
 #: Room left free at each edge of the frame, for supports and displacements.
 MARGIN = 4.5
 
 #: Cells (row, column from zero) of the sentences above the charts.
 ROOM_CELL = (3, 0)
 FORCES_CELL = (4, 0)
-DEFLECTED_CELL = (29, 0)
+DEFLECTED_CELL = (35, 0)
 #: Upper left cells of the two charts.
 FORCES_CHART = (5, 0)
-DEFLECTED_CHART = (30, 0)
+DEFLECTED_CHART = (36, 0)
 #: Where the numbers stand: a row of names, then the rows that the charts refer to.
 DATA_HEADER_ROW = 4
 DATA_FIRST_ROW = 5
-DATA_FIRST_COLUMN = 18
+DATA_FIRST_COLUMN = 13
 
 #: A force this small beside the largest one is none.
 _NO_FORCE = 1e-6
@@ -143,7 +143,7 @@ def picture_values(
     ...     support_directions=np.array([[1.0, 0.0], [0.0, 1.0], [0.0, 1.0]]),
     ...     forces=np.array([5.0]), forces_in="ULS1")
     >>> [block.values for block in blocks if block.column == Line.TENSION.column]
-    [[[4.5, 18.0], [95.5, 18.0]]]
+    [[[4.5, 25.0], [95.5, 25.0]]]
     """
     members = len(ends)
     drawn = ends[:MEMBERS_DRAWN]
@@ -207,8 +207,22 @@ def _projection(dimension: int) -> FloatArray:
 def _segments(points: FloatArray, ends: IntArray) -> FloatArray:
     """Points of lines that break after each member: start, end, nothing."""
     lines = np.full((len(ends), 3, 2), np.nan)
-    lines[:, :2] = points[ends]
+    lines[:, :2] = points[_turned(ends)]
     return lines.reshape(-1, 2)[:-1]
+
+
+def _turned(ends: IntArray) -> IntArray:
+    """The same members, none starting where the one before it ended.
+
+    Calc leaves out a point that equals the last one it drew, whatever the gap between them, and
+    with it the line to the next.
+    """
+    turned, last = [], -1
+    for start, end in ends.tolist():
+        pair = (end, start) if start == last else (start, end)
+        turned.append(pair)
+        last = pair[1]
+    return np.array(turned, dtype=np.int64).reshape(-1, 2)
 
 
 def _by_sign(points: FloatArray, ends: IntArray, forces: FloatArray) -> dict[Line, FloatArray]:
@@ -224,7 +238,8 @@ def _by_sign(points: FloatArray, ends: IntArray, forces: FloatArray) -> dict[Lin
 def _support_signs(
     points: FloatArray, joints: IntArray, support_joints: IntArray, directions: FloatArray
 ) -> dict[Line, FloatArray]:
-    fully, partly = [], []
+    fully: list[FloatArray] = []
+    partly: list[FloatArray] = []
     for joint in np.intersect1d(support_joints, joints):
         held = np.linalg.matrix_rank(directions[support_joints == joint])
         (fully if held == directions.shape[1] else partly).append(points[joint] - (0.0, _SIGN_BELOW))

@@ -35,11 +35,19 @@ class Equilibrium:
     entries: FloatArray
     #: (springs,) indices of the supports that are springs
     springs: IntArray
+    #: (joints,) joints in the order of their rows
+    joint_order: IntArray
 
     @property
     def bars(self) -> int:
         """Number of bars (columns of B): members and spring supports."""
         return len(self.rows)
+
+    @property
+    def ends(self) -> IntArray:
+        """(bars, 2) joints of each bar; a spring has its joint twice, for the ground has no index."""
+        joint = self.truss.supports.joint[self.springs]
+        return np.concatenate([self.truss.members, np.column_stack([joint, joint])])
 
     def dense(self) -> FloatArray:
         """B as an array (free, bars)."""
@@ -157,7 +165,7 @@ def equilibrium(truss: Truss, joint_order: IntArray | None = None) -> Equilibriu
         direction = frames.to_local(joint, truss.supports.direction[springs])
         rows = np.concatenate([rows, np.hstack([ground, rows_of_joints[joint]])])
         entries = np.concatenate([entries, np.hstack([np.zeros_like(direction), direction])])
-    return Equilibrium(truss, free, rows_of_joints, rows, entries, springs)
+    return Equilibrium(truss, free, rows_of_joints, rows, entries, springs, order)
 
 
 def _scatter(place: IntArray, weight: FloatArray, values: FloatArray, size: int) -> FloatArray:
