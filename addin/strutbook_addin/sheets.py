@@ -19,9 +19,10 @@ if TYPE_CHECKING:
 
 @dataclass(frozen=True)
 class ErrorValue:
-    """An error that a cell shows, such as ``#DIV/0!``."""
+    """An error that a cell shows, such as ``#DIV/0!``, and the formula that gives it."""
 
     text: str
+    formula: str = ""
 
 
 @dataclass(frozen=True)
@@ -50,6 +51,10 @@ class Refusal:
     reason: str
 
 
+#: How the link to a cell begins that stands beside each finding.
+LINK = "HYPERLINK(\"#'"
+
+
 class Sheets(Protocol):
     """The spreadsheet as a run sees it."""
 
@@ -76,6 +81,15 @@ class Sheets(Protocol):
     def findings(self) -> list[Finding]:
         """What the host has to say about the sheets read so far (formulas that it evaluated, ...)."""
         ...
+
+
+def is_ours(formula: str) -> bool:
+    r"""Whether a formula is one that a run writes, so that the next run may write over it.
+
+    >>> is_ours("HYPERLINK(\"#'Joints'!B3\",\"Joints!B3\")"), is_ours("=SUM(B3:B9)")
+    (True, False)
+    """
+    return formula.removeprefix("=").startswith(LINK)
 
 
 @lru_cache(maxsize=4096)

@@ -28,18 +28,20 @@ class Solved:
 def solve_file(file: Path, target: Path | None, tell: Callable[[str], None] = silent) -> Solved:
     """Solve the workbook `file` and write it to `target` (None: write nothing)."""
     from strutbook_addin.hosts.offline import OfflineWorkbook
-    from strutbook_addin.xlsx import UnreadableWorkbook
+    from strutbook_addin.xlsx import RefusedWorkbook
+    from strutbook_addin.xlsx.saving import check_target
 
     try:
         workbook = OfflineWorkbook.open(file)
         if target is None:
             return Solved(file, check(workbook, tell), None)
+        check_target(target)
         outcome = run(workbook, tell)
         tell("saving")
         target.parent.mkdir(parents=True, exist_ok=True)
         workbook.save(target)
-    except UnreadableWorkbook as unreadable:
-        return _stopped(file, str(unreadable))
+    except RefusedWorkbook as refused:
+        return _stopped(file, f"{file}: {refused}")
     except OSError as error:
         reason = error.strerror or str(error)
         return _stopped(file, f"{file}: {reason}. Nothing was written.")

@@ -10,7 +10,7 @@ import numpy as np
 from strutbook_addin.findings import Finding, Findings
 from strutbook_addin.outcome import Outcome
 from strutbook_addin.results import Results
-from strutbook_addin.sheets import Formula, Grid, Sheets, Written
+from strutbook_addin.sheets import LINK, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
 from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
 from strutbook_addin.tables.schema import (
@@ -169,4 +169,4 @@ def _link(finding: Finding, workbook: Workbook) -> Written:
         return finding.where
     quoted = finding.sheet.replace("'", "''").replace('"', '""')
     text = finding.where.replace('"', '""')
-    return Formula(f'=HYPERLINK("#\'{quoted}\'!{finding.cell}","{text}")', finding.where)
+    return Formula(f'={LINK}{quoted}\'!{finding.cell}","{text}")', finding.where)

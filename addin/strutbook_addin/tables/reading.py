@@ -99,7 +99,7 @@ def found(value: CellValue) -> str:
     if isinstance(value, bool):
         return "TRUE" if value else "FALSE"
     if isinstance(value, ErrorValue):
-        return f"the error {value.text}"
+        return f"the error {value.text}" + (f" of the formula {value.formula}" if value.formula else "")
     if isinstance(value, (date, time, timedelta)):
         return f"the date or time {value}"
     if isinstance(value, str):

@@ -1,0 +1,1 @@
+"""Hosts of a run: adapters of the `Sheets` protocol."""

@@ -1,0 +1,120 @@
+"""The workbook part: which sheets there are, their parts, and what all of them share."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from xml.etree import ElementTree as ET
+
+from strutbook_addin.xlsx.errors import UnreadableWorkbook
+from strutbook_addin.xlsx.markup import (
+    MAIN_NAMESPACES,
+    attribute,
+    children,
+    local_name,
+    parse,
+    plain_text,
+)
+from strutbook_addin.xlsx.number_formats import date_styles
+from strutbook_addin.xlsx.package import Package
+from strutbook_addin.xlsx.relationships import Relationship, relationships_of
+
+
+@dataclass(frozen=True, eq=False)
+class BookPart:
+    """What the workbook part and the parts shared by all sheets say."""
+
+    package: Package
+    part: str  #: name of the workbook part
+    root: ET.Element
+    relationships: tuple[Relationship, ...]
+    sheets: dict[str, str]  #: part of each worksheet by the name of the sheet, in their order
+    other_sheets: tuple[str, ...]  #: names of sheets without cells: charts, dialogs
+
+    @property
+    def from_1904(self) -> bool:
+        """Whether dates are counted from 1904."""
+        return any(
+            attribute(element, "date1904") in ("1", "true") for element in children(self.root, "workbookPr")
+        )
+
+    @property
+    def calculates_on_load(self) -> bool:
+        """Whether the workbook declares that stored values are to be calculated anew on opening."""
+        return any(
+            attribute(element, "fullCalcOnLoad") in ("1", "true") for element in children(self.root, "calcPr")
+        )
+
+    def related(self, kind: str) -> str | None:
+        """Part to which the workbook has a relationship of a kind (`styles`, `calcChain`), if it is there."""
+        for relationship in self.relationships:
+            if relationship.kind.endswith(f"/{kind}"):
+                return self.package.find(relationship.target)
+        return None
+
+    @cached_property
+    def shared_texts(self) -> list[str]:
+        """Texts that cells refer to by number."""
+        part = self.related("sharedStrings")
+        if part is None:
+            return []
+        return [plain_text(rich_text(item)) for item in parse(self.package.read(part), part)]
+
+    @cached_property
+    def date_styles(self) -> frozenset[int]:
+        """Indices of cell formats that show dates or times."""
+        part = self.related("styles")
+        return frozenset() if part is None else date_styles(parse(self.package.read(part), part))
+
+
+def read_book_part(package: Package) -> BookPart:
+    """Read the workbook part of a package.
+
+    Raises
+    ------
+    UnreadableWorkbook
+        When the package is no .xlsx or .xlsm workbook.
+    """
+    part = next(
+        (found.target for found in relationships_of(package, "") if found.kind.endswith("/officeDocument")),
+        None,
+    )
+    if part is None or package.find(part) is None:
+        raise UnreadableWorkbook(f"the file holds no workbook{_kind(package)}. Save it as .xlsx or .xlsm.")
+    if part.casefold().endswith(".bin"):
+        raise UnreadableWorkbook("the file is a binary workbook (.xlsb). Save it as .xlsx or .xlsm.")
+    root = parse(package.read(part), part)
+    namespace = root.tag.partition("}")[0].lstrip("{")
+    if local_name(root.tag) != "workbook" or namespace not in MAIN_NAMESPACES:
+        raise UnreadableWorkbook(f"the file holds no spreadsheet (its main part {part} is another document).")
+    relationships = tuple(relationships_of(package, part))
+    worksheets = {
+        found.identity: found.target for found in relationships if found.kind.endswith("/worksheet")
+    }
+    sheets = {
+        element.get("name", ""): worksheets[attribute(element, "id")]
+        for element in children(root, "sheets", "sheet")
+        if attribute(element, "id") in worksheets
+    }
+    names = [element.get("name", "") for element in children(root, "sheets", "sheet")]
+    others = tuple(name for name in names if name not in sheets)
+    return BookPart(package, part, root, relationships, sheets, others)
+
+
+def rich_text(item: ET.Element) -> str:
+    """Text of a shared or inline string: its runs one after the other, without phonetic readings."""
+    pieces: list[str] = []
+    for element in item:
+        name = local_name(element.tag)
+        if name == "t":
+            pieces.append(element.text or "")
+        elif name == "r":
+            pieces.extend(text.text or "" for text in children(element, "t"))
+    return "".join(pieces)
+
+
+def _kind(package: Package) -> str:
+    """What the package is instead, where that can be told."""
+    if package.find("mimetype") is not None:
+        return " but an OpenDocument file" if b"opendocument" in package.read("mimetype") else ""
+    return ""
