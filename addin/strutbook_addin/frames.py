@@ -43,7 +43,7 @@ def displacements(results: Results) -> pd.DataFrame | None:
         return None
     model = results.model
     index = pd.MultiIndex.from_product(
-        [model.geometry.joints.names, model.geometry.axes], names=["Joint", "Direction"]
+        [model.geometry.joints.names, list(model.geometry.axes)], names=["Joint", "Direction"]
     )
     flat = results.displacements.reshape(len(index), -1)
     return pd.DataFrame(flat, index, list(model.combinations.names))

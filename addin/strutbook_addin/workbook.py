@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from strutbook_addin.findings import Findings, Level
+from strutbook_addin.model.combinations import ONLY_CASE
 from strutbook_addin.sheets import Grid, Sheets
 from strutbook_addin.tables.headers import nearest
 from strutbook_addin.tables.reading import TableData, read_table
@@ -36,7 +37,7 @@ def read_workbook(sheets: Sheets, findings: Findings) -> Workbook:
         if table is not COMBINATIONS:
             read(table, set())
     # The cases are known now, so a column of factors can be told from a remark.
-    read(COMBINATIONS, {name for data in tables.values() for name in data.text("Case")})
+    read(COMBINATIONS, {ONLY_CASE, *(name for data in tables.values() for name in data.text("Case"))})
     findings.extend(sheets.findings())
     return Workbook(names, grids, tables)
 

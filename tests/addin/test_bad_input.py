@@ -112,7 +112,7 @@ WRONG: dict[str, tuple[Callable[[Sheets], None], str]] = {
     ),
     "date for a number": (
         put("Loads", 2, 3, dt.datetime(2026, 3, 1)),
-        "stop: Loads!C2 (Fy [kN]): expected a number, found the date or time 2026-03-01 00:00:00. "
+        "stop: Loads!C2 (Fy [kN]): expected a number, found the date or time 2026-03-01. "
         "Set the cell's number format to a plain number and type the value again.",
     ),
     "boolean for a number": (

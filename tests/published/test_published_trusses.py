@@ -6,6 +6,7 @@ Each case names its source and how it is known; figures are compared within thei
 from __future__ import annotations
 
 import json
+import math
 from pathlib import Path
 from typing import Any
 
@@ -82,10 +83,17 @@ def found(book: Any, case: dict[str, Any], quantity: str) -> float:
     unit, size = (
         ("in", {"in": 1.0, "ft": 12.0}) if length in {"in", "ft"} else ("mm", {"m": 1e3, "mm": 1.0, "cm": 10})
     )
-    for row in book.rows("Displacements", "Joint"):
-        if [str(row["Joint"]), row["Direction"]] == where:
-            return row[f"{combination} [{unit}]"] / size[length]
-    raise AssertionError(f"no displacement {where}")
+    joint, direction = where
+    moved = {
+        row["Direction"]: row[f"{combination} [{unit}]"] / size[length]
+        for row in book.rows("Displacements", "Joint")
+        if str(row["Joint"]) == joint
+    }
+    if direction in moved:
+        return moved[direction]
+    vector = [float(part) for part in direction.strip("()").split(",")]
+    along = sum(part * moved[axis] for part, axis in zip(vector, "xyz", strict=False))
+    return along / math.hypot(*vector)
 
 
 @pytest.mark.parametrize("name", ANALYSES)
