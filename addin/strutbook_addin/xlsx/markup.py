@@ -125,6 +125,15 @@ def tag_at(data: bytes, start: int) -> bytes:
     return found.group()
 
 
+def element_end(data: bytes, start: int, close: int) -> int:
+    """Byte after an element, from the bytes where its tag and its end tag begin.
+
+    For an empty element the parser reports an end tag where the next thing begins; only its tag counts.
+    """
+    opening = tag_at(data, start)
+    return start + len(opening) if opening.endswith(b"/>") else data.index(b">", close) + 1
+
+
 def with_attribute(tag: bytes, name: str, value: str | None) -> bytes:
     """A start tag with an attribute set, or without it where the value is None.
 

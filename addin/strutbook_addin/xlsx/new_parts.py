@@ -14,6 +14,7 @@ from strutbook_addin.xlsx.markup import (
     as_utf8,
     children,
     damaged,
+    element_end,
     forbidden_doctype,
     local_name,
     spliced,
@@ -123,7 +124,7 @@ class BookChanges:
         changes = [_inside(data, root, new)]
         targets = {found.identity for found in self.book.relationships if found.target in removed}
         changes += [
-            (element.start, _end(data, element), b"")
+            (element.start, element_end(data, element.start, element.close), b"")
             for element in root.children
             if element.attributes.get("Id") in targets
         ]
@@ -141,7 +142,7 @@ class BookChanges:
         changes = [_inside(data, root, new)]
         gone = {f"/{name}".casefold() for name in removed}
         changes += [
-            (element.start, _end(data, element), b"")
+            (element.start, element_end(data, element.start, element.close), b"")
             for element in root.children
             if element.attributes.get("PartName", "").casefold() in gone
         ]
@@ -161,7 +162,7 @@ class BookChanges:
                 changes.append((start, start + len(tag), with_attribute(tag, "fullCalcOnLoad", "1")))
             else:
                 before = next(found[name] for name in _BEFORE_CALCULATION if name in found)
-                end = _end(data, before)
+                end = element_end(data, before.start, before.close)
                 changes.append((end, end, f'<{prefix}calcPr fullCalcOnLoad="1"/>'.encode()))
         changed[part] = spliced(data, changes)
 
@@ -218,9 +219,3 @@ def _inside(data: bytes, element: Element, new: str) -> tuple[int, int, bytes]:
             opening[:-2].rstrip() + b">" + new.encode() + close,
         )
     return (element.close, element.close, new.encode())
-
-
-def _end(data: bytes, element: Element) -> int:
-    if element.close > element.start:
-        return data.index(b">", element.close) + 1
-    return element.start + len(tag_at(data, element.start))

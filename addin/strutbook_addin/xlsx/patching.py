@@ -10,7 +10,7 @@ from collections.abc import Iterator, Mapping
 
 from strutbook_addin.sheets import Written, cell_name
 from strutbook_addin.xlsx.cell_values import markup
-from strutbook_addin.xlsx.markup import spliced, tag_at, text_markup, with_attribute
+from strutbook_addin.xlsx.markup import element_end, spliced, tag_at, text_markup, with_attribute
 from strutbook_addin.xlsx.sheet_part import Cell, Row, SheetPart, area_of
 
 #: A stored value of a formula; None removes it.
@@ -65,7 +65,7 @@ def _value_change(sheet: SheetPart, cell: Cell, value: Stored) -> Iterator[_Chan
     opening = tag_at(sheet.data, cell.start)
     yield (cell.start, cell.start + len(opening), with_attribute(opening, "t", kind))
     new = "" if value is None else f"<{sheet.prefix}v>{text}</{sheet.prefix}v>"
-    yield (start, _element_end(sheet, start, close), new.encode())
+    yield (start, element_end(sheet.data, start, close), new.encode())
 
 
 def _columns_by_row(sheet: SheetPart, wanted: Mapping[int, object]) -> dict[int, list[int]]:
@@ -90,7 +90,7 @@ def _row_changes(
         if cell is not None:
             yield (
                 cell.start,
-                _element_end(sheet, cell.start, cell.close),
+                element_end(sheet.data, cell.start, cell.close),
                 markup(row, column, values[column], cell.attributes, sheet.prefix),
             )
             continue
@@ -174,8 +174,3 @@ def _new_cell(sheet: SheetPart, row: int, column: int, value: Written) -> bytes:
     if attributes["s"] == "0":
         del attributes["s"]
     return markup(row, column, value, attributes, sheet.prefix)
-
-
-def _element_end(sheet: SheetPart, start: int, close: int) -> int:
-    """Byte after an element whose tag and end tag begin at two bytes (one, where it is empty)."""
-    return sheet.data.index(b">", close) + 1 if close > start else start + len(tag_at(sheet.data, start))

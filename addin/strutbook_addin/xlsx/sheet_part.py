@@ -27,7 +27,7 @@ class Cell:
 
     def __init__(self, start: int, attributes: dict[str, str]) -> None:
         self.start = start  #: byte where its tag begins
-        self.close = start  #: byte where its end tag begins; that of the tag itself when the element is empty
+        self.close = start  #: byte where its end tag begins; for an empty element, the byte after it
         self.attributes = attributes
         self.value: str | None = None  #: its value as it is stored, None where there is none
         self.formula: str | None = None  #: without ``=``; empty where it is shared with another cell
@@ -55,7 +55,7 @@ class Row:
 
     start: int  #: byte where its tag begins
     attributes: dict[str, str]
-    close: int = 0  #: byte where its end tag begins; that of the tag itself when the element is empty
+    close: int = 0  #: byte where its end tag begins; for an empty element, the byte after it
 
 
 @dataclass(frozen=True)
@@ -83,7 +83,7 @@ class SheetPart:
     cells: dict[tuple[int, int], Cell] = field(default_factory=dict)
     rows: dict[int, Row] = field(default_factory=dict)
     start: int = -1  #: byte where the tag of the sheet data begins
-    close: int = -1  #: byte where its end tag begins; that of the tag itself when the element is empty
+    close: int = -1  #: byte where its end tag begins; for an empty element, the byte after it
     dimension: tuple[int, str] | None = None  #: byte and reference of the dimension
     column_styles: list[tuple[int, int, int]] = field(default_factory=list)  #: first and last column, format
     merged: list[Area] = field(default_factory=list)
