@@ -45,9 +45,8 @@ def work(options: argparse.Namespace) -> int:
         say("")
         for line in _highlights(solved.outcome.results):
             say(line)
-        say(
-            f"\nOpen {file} in a spreadsheet program: results stand beside the inputs, the sheet Picture draws them."
-        )
+        say(f"\nOpen {file} in a spreadsheet program: results stand beside the inputs,")
+        say("and the sheet Picture draws them.")
     return solved.exit_status
 
 

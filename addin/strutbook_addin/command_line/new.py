@@ -57,9 +57,9 @@ def work(options: argparse.Namespace) -> int:
     if problem:
         say(f"strutbook new: {problem}", sys.stderr)
         return 2
-    say(
-        f"{file}: a workbook for {options.shape} was written. Fill in its tables, then run: strutbook solve {file}"
-    )
+    what = "with empty tables" if options.shape in {"plane", "space"} else f"with a {options.shape} truss"
+    say(f"{file}: a workbook {what} was written.")
+    say(f"Fill in or change its tables, then run: strutbook solve {file}")
     return 0
 
 

@@ -157,21 +157,25 @@ class ActionReader:
         return values[:, :dimensions]
 
     def _note_loads_on_supports(self, table: TableData, joint: IndexArray, forces: FloatArray) -> None:
+        """Note the loads that act along held directions; one note for all, since many are usual."""
         rigid = np.isinf(self._held.stiffness)
+        into_ground: list[tuple[int, str]] = []
         for row in np.flatnonzero((joint >= 0) & (forces != 0).any(axis=1)):
             along = self._held.direction[rigid & (self._held.joint == joint[row])]
             if not len(along):
                 continue
             rest = forces[row] - np.linalg.lstsq(along, along @ forces[row], rcond=None)[0]
             if np.abs(rest).max() <= 1e-9 * np.abs(forces[row]).max():
-                column = ("Fx", "Fy", "Fz")[int(np.abs(forces[row]).argmax())]
-                table.report(
-                    self._findings,
-                    int(row),
-                    column,
-                    "the support holds this direction, so the load goes straight into the reaction.",
-                    level=Level.NOTE,
-                )
+                into_ground.append((int(row), ("Fx", "Fy", "Fz")[int(np.abs(forces[row]).argmax())]))
+        if into_ground:
+            others = len(into_ground) - 1
+            more = f" {others} more load{'s' * (others > 1)} below do so too." if others else ""
+            table.report(
+                self._findings,
+                *into_ground[0],
+                f"the support holds this direction, so the load goes straight into the reaction.{more}",
+                level=Level.NOTE,
+            )
 
     def _add_temperature(
         self, table: TableData, member: IndexArray, case: IndexArray, known: NDArray[np.bool_]
