@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 import sys
 from typing import TYPE_CHECKING, TextIO
 
@@ -58,6 +57,8 @@ class Reporter:
         if self._bar is not None:
             self._bar.close()
         if self._machine:
+            import json
+
             say(json.dumps(self._reports, indent=1, ensure_ascii=False))
 
 

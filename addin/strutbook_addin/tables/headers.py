@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
@@ -123,6 +122,8 @@ def nearest(name: str, known: Sequence[str]) -> str:
     >>> nearest("U11", ["U1", "L1"])
     ' Did you mean U1?'
     """
+    import difflib
+
     close = difflib.get_close_matches(name, known, n=1, cutoff=0.5)
     if not close:
         folded = [other for other in known if other.casefold() == name.casefold()]

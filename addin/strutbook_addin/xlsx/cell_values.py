@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from datetime import datetime
-from xml.sax.saxutils import quoteattr
+from html import escape
 
 from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart
@@ -57,7 +57,7 @@ def markup(row: int, column: int, value: Written, attributes: dict[str, str], pr
     >>> markup(1, 0, float("nan"), {}, "")
     b'<c r="A2"/>'
     """
-    kept = "".join(f" {name}={quoteattr(attributes[name])}" for name in _KEPT if name in attributes)
+    kept = "".join(f' {name}="{escape(attributes[name])}"' for name in _KEPT if name in attributes)
     head = f'<{prefix}c r="{cell_name(row, column)}"{kept}'
     close = f"</{prefix}c>"
     if isinstance(value, Formula):

@@ -5,8 +5,8 @@ from __future__ import annotations
 import codecs
 import re
 from collections.abc import Iterable
+from html import escape
 from xml.etree import ElementTree as ET
-from xml.sax.saxutils import escape as escape_markup
 
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 
@@ -174,7 +174,7 @@ def text_markup(text: str) -> str:
     >>> text_markup("a < b"), text_markup("bell \\x07"), text_markup("_x0041_")
     ('a &lt; b', 'bell _x0007_', '_x005F_x0041_')
     """
-    return escape_markup(_TO_ESCAPE.sub(lambda found: f"_x{ord(found.group()):04X}_", text))
+    return escape(_TO_ESCAPE.sub(lambda found: f"_x{ord(found.group()):04X}_", text), quote=False)
 
 
 def plain_text(text: str) -> str:

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from html import escape
 from xml.parsers import expat
-from xml.sax.saxutils import quoteattr
 
 from strutbook_addin.sheets import Written
 from strutbook_addin.xlsx.book_part import BookPart
@@ -180,7 +180,7 @@ class BookChanges:
             "",
         )
         return "".join(
-            f'<{prefix}sheet xmlns:rel="{namespace}" name={quoteattr(sheet)} '
+            f'<{prefix}sheet xmlns:rel="{namespace}" name="{escape(sheet)}" '
             f'sheetId="{max(numbers) + place}" rel:id="{identity}"/>'
             for place, (sheet, identity) in enumerate(self._identities(names).items(), start=1)
         )

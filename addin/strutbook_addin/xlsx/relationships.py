@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import posixpath
 from dataclasses import dataclass
-from urllib.parse import unquote
 from xml.etree import ElementTree as ET
 
 from strutbook_addin.xlsx.markup import parse
@@ -48,4 +47,9 @@ def _target(element: ET.Element, part: str, package: Package) -> str:
     target = element.get("Target", "").replace("\\", "/").partition("#")[0]
     path = target[1:] if target.startswith("/") else posixpath.join(posixpath.dirname(part), target)
     path = posixpath.normpath(path)
-    return package.find(path) or package.find(unquote(path)) or path
+    found = package.find(path)
+    if found is None and "%" in path:
+        from urllib.parse import unquote
+
+        found = package.find(unquote(path))
+    return found or path
