@@ -62,7 +62,7 @@ class ActionReader:
         loaded = known & (intensity != 0).any(axis=1)
         if loaded.any():
             row = int(np.flatnonzero(loaded)[0])
-            count = len(np.unique(member[loaded]))
+            count = len(set(member[loaded].tolist()))
             table.report(
                 self._findings,
                 row,
@@ -129,7 +129,8 @@ class ActionReader:
     def actions(self, truss: strutbook.Truss) -> strutbook.Actions:
         """All that was added, brought to the joints and members of the truss."""
         for lump, case, member, intensity in self._line_loads:
-            for one in np.unique(case):
+            # A set, because np.unique loads another library.
+            for one in sorted(set(case.tolist())):
                 rows = case == one
                 self._joint_loads[:, :, one] += lump(truss, member[rows], intensity[rows])
         for case, member, change in self._warmings:
