@@ -1,0 +1,1 @@
+"""Materials of published standards: steel grades and timber strength classes."""

@@ -1,0 +1,1 @@
+"""Cross-sections: properties from dimensions, and sections by designation."""
