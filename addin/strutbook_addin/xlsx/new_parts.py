@@ -12,7 +12,6 @@ from strutbook_addin.xlsx.book_part import BookPart
 from strutbook_addin.xlsx.markup import (
     MAIN_NAMESPACES,
     as_utf8,
-    children,
     damaged,
     element_end,
     forbidden_doctype,
@@ -154,7 +153,7 @@ class BookChanges:
         found = {local_name(element.name): element for element in root.children}
         changes: list[tuple[int, int, bytes]] = []
         if names:
-            changes.append(_inside(data, found["sheets"], self._sheet_tags(prefix, names)))
+            changes.append(_inside(data, found["sheets"], self._sheet_tags(found["sheets"], names)))
         if asked:
             if "calcPr" in found:
                 start = found["calcPr"].start
@@ -166,23 +165,17 @@ class BookChanges:
                 changes.append((end, end, f'<{prefix}calcPr fullCalcOnLoad="1"/>'.encode()))
         changed[part] = spliced(data, changes)
 
-    def _sheet_tags(self, prefix: str, names: Mapping[str, str]) -> str:
-        elements = list(children(self.book.root, "sheets", "sheet"))
-        numbers = [int(element.get("sheetId", "0")) for element in elements]
-        # ElementTree names attributes by their namespace, so a new prefix is declared for ours.
-        namespace = next(
-            (
-                key.partition("}")[0].lstrip("{")
-                for element in elements
-                for key in element.attrib
-                if "}" in key
-            ),
-            "",
-        )
+    def _sheet_tags(self, sheets: Element, names: Mapping[str, str]) -> str:
+        """Elements of the new sheets, written like those that are there (some readers know only `r:id`)."""
+        like = sheets.children[0]
+        identity_name = next(name for name in like.attributes if name.endswith(":id"))
+        declared = f"xmlns:{identity_name.partition(':')[0]}"
+        namespace = f' {declared}="{like.attributes[declared]}"' if declared in like.attributes else ""
+        first = 1 + max(int(sheet.attributes.get("sheetId", "0")) for sheet in sheets.children)
         return "".join(
-            f'<{prefix}sheet xmlns:rel="{namespace}" name="{escape(sheet)}" '
-            f'sheetId="{max(numbers) + place}" rel:id="{identity}"/>'
-            for place, (sheet, identity) in enumerate(self._identities(names).items(), start=1)
+            f'<{like.name}{namespace} name="{escape(sheet)}" sheetId="{first + place}" '
+            f'{identity_name}="{identity}"/>'
+            for place, (sheet, identity) in enumerate(self._identities(names).items())
         )
 
     def _small_part(self, name: str) -> tuple[str, bytes, Element]:
