@@ -115,6 +115,19 @@ WRONG: dict[str, tuple[Callable[[Sheets], None], str]] = {
         "stop: Loads!C2 (Fy [kN]): expected a number, found the date or time 2026-03-01. "
         "Set the cell's number format to a plain number and type the value again.",
     ),
+    "number beyond all measure": (
+        put("Loads", 2, 3, -1e300),
+        "stop: Loads!C2 (Fy [kN]): expected a number of at most 1e+25, found -1e+300. Correct the number.",
+    ),
+    "header that shows an error": (
+        put("Loads", 1, 2, "=1/0"),
+        "stop: Loads!B1: the header is the error #DIV/0! of the formula =1/0. "
+        "Type the header, or clear the cell.",
+    ),
+    "blank row below the headers": (
+        lambda sheets: sheets["Joints"].insert(1, [None]),
+        "stop: Joints!A2 (Joint): the table holds no joint. Fill it in below its headers, without a gap.",
+    ),
     "boolean for a number": (
         put("Joints", 3, 2, True),
         "stop: Joints!B3 (x [m]): expected a number, found TRUE. Type a number.",

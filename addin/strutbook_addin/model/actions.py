@@ -183,8 +183,8 @@ class ActionReader:
     ) -> None:
         change = np.nan_to_num(table.number("Temperature change"))
         warmed = np.flatnonzero(known & (change != 0))
-        expansion = self._rigidity.expansion[member]
-        for row in warmed[np.isnan(expansion[warmed])]:
+        expansion = self._rigidity.expansion[member[warmed]]
+        for row in warmed[np.isnan(expansion)]:
             table.report(
                 self._findings,
                 int(row),

@@ -114,7 +114,7 @@ def _report_members_without_length(
             "the member begins and ends at the same joint.",
             "Name two different joints.",
         )
-    if np.isnan(coordinates).any():
+    if np.isnan(coordinates).any() or not known.any():
         return
     lengths = np.linalg.norm(coordinates[ends[:, 1]] - coordinates[ends[:, 0]], axis=1)
     short = known & (ends[:, 0] != ends[:, 1]) & (lengths <= SAME_PLACE * _extent(coordinates))

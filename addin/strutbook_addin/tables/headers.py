@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, field
 
 from strutbook_addin.findings import Findings, Level
-from strutbook_addin.sheets import CellValue, Grid
+from strutbook_addin.sheets import CellValue, ErrorValue, Grid
 from strutbook_addin.tables.schema import Column, Role, Table, normal
 from strutbook_addin.tables.units import Dimension, Unit, UnitProblem, split_header, unit_of
 
@@ -85,6 +85,7 @@ def locate(table: Table, sheet: str, grid: Grid, findings: Findings) -> Layout |
         for column, value in enumerate(grid[header_row])
         if isinstance(value, (int, float)) and not isinstance(value, bool)
     )
+    _report_errors_in_headers(sheet, header_row, grid[header_row], findings)
     columns = _match(table, sheet, header_row, headers, findings)
     units = _units(table, sheet, header_row, headers, columns, findings)
     taken = set(columns.values())
@@ -137,6 +138,31 @@ def _normal_header(header: str) -> str:
 
 def _example(column: Column) -> str:
     return f"{column.name} [{column.dimension.suggested[0]}]" if column.dimension else column.name
+
+
+def _report_errors_in_headers(
+    sheet: str, header_row: int, values: Sequence[CellValue], findings: Findings
+) -> None:
+    """A header that shows an error could be any column's, and that column would be missed silently."""
+    for column, value in enumerate(values):
+        if isinstance(value, ErrorValue):
+            findings.add(
+                Level.STOP,
+                f"the header is {error_words(value)}.",
+                "Type the header, or clear the cell.",
+                sheet=sheet,
+                row=header_row,
+                column=column,
+            )
+
+
+def error_words(value: ErrorValue) -> str:
+    """An error as a sentence says it.
+
+    >>> error_words(ErrorValue("#DIV/0!", "=1/0"))
+    'the error #DIV/0! of the formula =1/0'
+    """
+    return f"the error {value.text}" + (f" of the formula {value.formula}" if value.formula else "")
 
 
 def _match(

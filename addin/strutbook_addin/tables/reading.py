@@ -12,10 +12,13 @@ from numpy.typing import NDArray
 
 from strutbook_addin.findings import Findings, Level
 from strutbook_addin.sheets import CellValue, ErrorValue, Grid
-from strutbook_addin.tables.headers import Layout, is_blank, locate, name_text, nearest
+from strutbook_addin.tables.headers import Layout, error_words, is_blank, locate, name_text, nearest
 from strutbook_addin.tables.schema import Bound, Column, Kind, Role, Table
 
 FloatArray = NDArray[np.float64]
+#: Largest number that a cell may hold; its inverse is the smallest where a column takes only numbers above 0.
+#: Nothing in a truss comes near, and beyond it products of a few of them are no longer numbers.
+LARGEST = 1e25
 
 
 @dataclass(frozen=True, eq=False)
@@ -99,7 +102,7 @@ def found(value: CellValue) -> str:
     if isinstance(value, bool):
         return "TRUE" if value else "FALSE"
     if isinstance(value, ErrorValue):
-        return f"the error {value.text}" + (f" of the formula {value.formula}" if value.formula else "")
+        return error_words(value)
     if isinstance(value, (date, time, timedelta)):
         return f"the date or time {value}"
     if isinstance(value, str):
@@ -179,11 +182,12 @@ class _Reader:
             first.setdefault(name, row)
 
     def _within(self, numbers: FloatArray) -> NDArray[np.bool_]:
+        sensible = np.abs(numbers) <= LARGEST
         if self._column.bound is Bound.POSITIVE:
-            return numbers > 0
+            return sensible & (numbers >= 1 / LARGEST)
         if self._column.bound is Bound.NOT_NEGATIVE:
-            return numbers >= 0
-        return np.ones(len(numbers), dtype=np.bool_)
+            return sensible & (numbers >= 0)
+        return sensible
 
     def _number(self, row: int, value: CellValue) -> float:
         if is_blank(value) and not self._column.required:
@@ -214,9 +218,16 @@ class _Reader:
         return text
 
     def _wrong(self, row: int, value: CellValue, question: str = "") -> None:
+        expected = self._column.expected
+        if (
+            isinstance(value, (int, float))
+            and not isinstance(value, bool)
+            and LARGEST < abs(value) < math.inf
+        ):
+            expected += f" of at most {LARGEST:.0e}"
         self._add(
             row,
-            f"expected {self._column.expected}, found {found(value)}.{question}",
+            f"expected {expected}, found {found(value)}.{question}",
             remedy(value, self._column),
         )
 
