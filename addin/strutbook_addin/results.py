@@ -65,9 +65,7 @@ class Results:
             ResultColumn("Tension", np.maximum(tension, 0.0), Dimension.FORCE),
             ResultColumn("Tension in", self._names(self.strength[forces.argmax(axis=1)], tension > 0)),
             ResultColumn("Compression", np.minimum(compression, 0.0), Dimension.FORCE),
-            ResultColumn(
-                "Compression in", self._names(self.strength[forces.argmin(axis=1)], compression < 0)
-            ),
+            ResultColumn("Compression in", self._names(self.strength[forces.argmin(axis=1)], compression < 0)),
         ]
 
     def support_columns(self, rows: int) -> list[ResultColumn]:
@@ -99,10 +97,7 @@ class Results:
             "Reactions": ResultSheet(
                 "Force of the support on the truss, positive along its direction",
                 Dimension.FORCE,
-                [
-                    [joints[joint], label]
-                    for joint, label in zip(model.held.joint, model.held.label, strict=True)
-                ],
+                [[joints[joint], label] for joint, label in zip(model.held.joint, model.held.label, strict=True)],
                 self._by_combination(self.reactions),
             ),
         }

@@ -148,9 +148,7 @@ def _stamp(outcome: Outcome) -> dict[str, float | str]:
 
 def _write_findings(writer: TableWriter, findings: tuple[Finding, ...], workbook: Workbook) -> None:
     layout, grid = _result_sheet(FINDINGS, workbook)
-    rows = [
-        [finding.level.value, _link(finding, workbook), _what(finding), finding.todo] for finding in findings
-    ]
+    rows = [[finding.level.value, _link(finding, workbook), _what(finding), finding.todo] for finding in findings]
     for place, schema in enumerate(FINDINGS.columns):
         column = layout.columns[schema.name]
         values: list[list[Written]] = [[schema.name], *([row[place] or None] for row in rows)]

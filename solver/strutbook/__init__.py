@@ -7,7 +7,8 @@ from strutbook.actions import Actions
 from strutbook.analysis import Analysis, analyse
 from strutbook.equilibrium import Equilibrium, equilibrium
 from strutbook.errors import InvalidTruss, NotBalanced, StiffnessNeeded, StrutbookError, Unstable
-from strutbook.mechanisms import Mechanism, describe_mechanism
+from strutbook.mechanism_words import describe_mechanism
+from strutbook.mechanisms import Mechanism
 from strutbook.member_loads import (
     STANDARD_GRAVITY,
     line_load,

@@ -59,6 +59,5 @@ def check_indices(indices: IntArray, count: int, name: str, of: str) -> None:
     if indices.size and (indices.min() < 0 or indices.max() >= count):
         place = np.argwhere((indices < 0) | (indices >= count))[0]
         raise InvalidTruss(
-            f"{name} {int(place[0])} names {of} {int(indices[tuple(place)])}, "
-            f"but there are {count}, counted from 0."
+            f"{name} {int(place[0])} names {of} {int(indices[tuple(place)])}, but there are {count}, counted from 0."
         )

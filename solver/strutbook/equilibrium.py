@@ -75,7 +75,7 @@ class Equilibrium:
     def elongations(self, movement: FloatArray) -> FloatArray:
         """Bᵀ d: (bars, cases) of movements of the free degrees of freedom (free, cases), in m."""
         with_ground = np.concatenate([movement, np.zeros((1, movement.shape[1]))])
-        total = self.entries[:, :1] * with_ground[self.rows[:, 0]]
+        total: FloatArray = self.entries[:, :1] * with_ground[self.rows[:, 0]]
         for column in range(1, self.rows.shape[1]):
             total += self.entries[:, column : column + 1] * with_ground[self.rows[:, column]]
         return total
@@ -174,4 +174,4 @@ def _scatter(place: IntArray, weight: FloatArray, values: FloatArray, size: int)
     target = place[:, :, np.newaxis] * cases + np.arange(cases)
     amount = weight[:, :, np.newaxis] * values[:, np.newaxis, :]
     summed = np.bincount(target.reshape(-1), amount.reshape(-1), minlength=size * cases)
-    return summed.reshape(size, cases)
+    return summed.astype(np.float64, copy=False).reshape(size, cases)

@@ -24,15 +24,18 @@ def minimum_degree_order(truss: Truss) -> IntArray:
     graph = csc_array(
         coo_array(
             (
-                np.concatenate([np.full(2 * len(first), -1.0), np.bincount(truss.members.ravel(), minlength=joints) + 1.0]),
+                np.concatenate(
+                    [
+                        np.full(2 * len(first), -1.0),
+                        np.bincount(truss.members.ravel(), minlength=joints) + 1.0,
+                    ]
+                ),
                 (np.concatenate([first, second, every]), np.concatenate([second, first, every])),
             ),
             shape=(joints, joints),
         )
     )
-    factor = splu(
-        graph, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options={"SymmetricMode": True}
-    )
+    factor = splu(graph, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options={"SymmetricMode": True})
     order = np.empty(joints, dtype=np.intp)
     order[factor.perm_c] = np.arange(joints)
     return order

@@ -36,7 +36,7 @@ class SparseSystem:
         solution = np.empty_like(right)
         for start in range(0, right.shape[1], BLOCK):
             part = slice(start, start + BLOCK)
-            solution[:, part] = self.factor.solve(np.asfortranarray(right[:, part]), side)
+            solution[:, part] = self.factor.solve(np.asfortranarray(right[:, part]), side)  # type: ignore[call-overload]  # stubs leave out `trans`
         return solution
 
 
@@ -48,9 +48,7 @@ def factor_equilibrium(matrix: Equilibrium) -> SparseSystem:
 def factor_stiffness(matrix: Equilibrium, bar_stiffness: FloatArray, shift: float = 0.0) -> SparseSystem:
     """Factor of K = B diag(bar_stiffness) Bᵀ, with `shift` added to its diagonal."""
     stiffness = sparse_stiffness(matrix, bar_stiffness, shift)
-    return SparseSystem(
-        splu(stiffness, permc_spec="NATURAL", diag_pivot_thresh=0.0, options={"SymmetricMode": True})
-    )
+    return SparseSystem(splu(stiffness, permc_spec="NATURAL", diag_pivot_thresh=0.0, options={"SymmetricMode": True}))
 
 
 def sparse_equilibrium(matrix: Equilibrium) -> csc_array:

@@ -8,9 +8,7 @@ from strutbook.equilibrium import Equilibrium
 from strutbook.systems import System
 
 
-def forces_by_statics(
-    matrix: Equilibrium, system: System, loads: FloatArray, scale: FloatArray
-) -> FloatArray:
+def forces_by_statics(matrix: Equilibrium, system: System, loads: FloatArray, scale: FloatArray) -> FloatArray:
     """Bar forces (bars, cases) N of a statically determinate truss.
 
     Misfits, temperature and settlements add no force to it, so they are not asked for.

@@ -89,13 +89,15 @@ class JointFrames:
         """Components along the local axes of `joint` (n,) of vectors (n, dimensions)."""
         if self.axes is None:
             return vectors
-        return np.einsum("nld,nd->nl", self.axes[joint], vectors)
+        local: FloatArray = np.einsum("nld,nd->nl", self.axes[joint], vectors)
+        return local
 
     def to_global(self, local: FloatArray) -> FloatArray:
         """Vectors (joints, dimensions, cases) of which the components along the local axes are given."""
         if self.axes is None:
             return local
-        return np.einsum("jld,jlc->jdc", self.axes, local)
+        vectors: FloatArray = np.einsum("jld,jlc->jdc", self.axes, local)
+        return vectors
 
 
 def joint_frames(supports: Supports, joints: int, dimensions: int) -> JointFrames:

@@ -38,11 +38,11 @@ class DenseSystem:
 
     def solve(self, right: FloatArray) -> FloatArray:
         """Solution (n, cases) of A x = right."""
-        return np.linalg.solve(self._matrix, right)
+        return np.linalg.solve(self._matrix, right).astype(np.float64, copy=False)
 
     def solve_transposed(self, right: FloatArray) -> FloatArray:
         """Solution (n, cases) of Aᵀ x = right."""
-        return np.linalg.solve(self._matrix.T, right)
+        return np.linalg.solve(self._matrix.T, right).astype(np.float64, copy=False)
 
 
 def is_large(truss: Truss) -> bool:

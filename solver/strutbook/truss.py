@@ -70,9 +70,7 @@ class Truss:
                 )
             if not (rigidity > 0).all():
                 wrong = int(rigidity.argmin())
-                raise InvalidTruss(
-                    f"Member {wrong} has the axial rigidity {rigidity[wrong]}; expected above 0 N."
-                )
+                raise InvalidTruss(f"Member {wrong} has the axial rigidity {rigidity[wrong]}; expected above 0 N.")
             object.__setattr__(self, "axial_rigidity", rigidity)
         _ = self.frames  # refuses directions that are held twice
 
@@ -89,7 +87,7 @@ class Truss:
     @cached_property
     def lengths(self) -> FloatArray:
         """(members,) m."""
-        lengths = np.sqrt((self._vectors * self._vectors).sum(axis=1))
+        lengths: FloatArray = np.sqrt((self._vectors * self._vectors).sum(axis=1))
         lengths.flags.writeable = False
         return lengths
 

@@ -102,8 +102,7 @@ WRONG: dict[str, tuple[Callable[[Sheets], None], str]] = {
     ),
     "blank for a number": (
         put("Joints", 3, 2, None),
-        "stop: Joints!B3 (x [m]): expected a number, found an empty cell. "
-        "Fill the cell in, or clear the whole row.",
+        "stop: Joints!B3 (x [m]): expected a number, found an empty cell. Fill the cell in, or clear the whole row.",
     ),
     "error value": (
         put("Joints", 3, 2, "#DIV/0!"),
@@ -121,8 +120,7 @@ WRONG: dict[str, tuple[Callable[[Sheets], None], str]] = {
     ),
     "header that shows an error": (
         put("Loads", 1, 2, "=1/0"),
-        "stop: Loads!B1: the header is the error #DIV/0! of the formula =1/0. "
-        "Type the header, or clear the cell.",
+        "stop: Loads!B1: the header is the error #DIV/0! of the formula =1/0. Type the header, or clear the cell.",
     ),
     "blank row below the headers": (
         lambda sheets: sheets["Joints"].insert(1, [None]),
@@ -173,8 +171,7 @@ WRONG: dict[str, tuple[Callable[[Sheets], None], str]] = {
     ),
     "two joints at one place": (
         both(add("Joints", ["D", 4, 3]), add("Members", ["AD", "A", "D", 400, 200])),
-        "stop: Joints!B5 (x [m]): joint D is at the same place as joint C. "
-        "Use one joint, or correct the coordinates.",
+        "stop: Joints!B5 (x [m]): joint D is at the same place as joint C. Use one joint, or correct the coordinates.",
     ),
     "zero-length member": (
         both(add("Joints", ["D", 4, 3]), add("Members", ["CD", "C", "D", 400, 200])),
@@ -348,8 +345,6 @@ def test_flat_space_truss_is_told_to_clear_z(triangle, make_book):
 
 
 def test_misspelt_factor_column_with_remarks_is_left_alone(triangle, make_book):
-    add(
-        "Combinations", ["Combination", "For", "Loads", "Remark"], ["C1", "strength", 1.35, "from the brief"]
-    )(triangle)
+    add("Combinations", ["Combination", "For", "Loads", "Remark"], ["C1", "strength", 1.35, "from the brief"])(triangle)
     book = make_book(triangle)
     assert book.solve().exit_status == 0

@@ -147,9 +147,7 @@ def test_corners_of_a_cube_do_not_hide_each_other():
     ends = np.array([[a, b] for a in range(8) for b in range(a)])
     corners = np.array(
         points(
-            picture_values(
-                cube, ends, support_joints=np.array([0]), support_directions=np.array([[0.0, 0.0, 1.0]])
-            ),
+            picture_values(cube, ends, support_joints=np.array([0]), support_directions=np.array([[0.0, 0.0, 1.0]])),
             Line.JOINTS,
         )
     )
@@ -164,9 +162,7 @@ def test_what_has_no_room_is_left_out_and_said():
     count = MEMBERS_DRAWN + 200
     chord = np.array([[float(x), 0.0] for x in range(count + 1)])
     ends = np.array([[joint, joint + 1] for joint in range(count)])
-    blocks = picture_values(
-        chord, ends, **SUPPORTS, forces=np.ones(count), forces_in="U", displacements=chord * 1e-3
-    )
+    blocks = picture_values(chord, ends, **SUPPORTS, forces=np.ones(count), forces_in="U", displacements=chord * 1e-3)
     assert sentence(blocks, ROOM_CELL) == f"Only the first {MEMBERS_DRAWN} of {count} members are drawn."
     assert len(drawn(blocks, Line.TENSION)) == MEMBERS_DRAWN
     for block in blocks:

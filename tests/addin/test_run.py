@@ -100,9 +100,7 @@ def test_unsolvable_run_clears_every_result(triangle, make_book):
     assert book.solve().exit_status == 2
     for sheet, key in (("Members", "Member"), ("Joints", "Joint"), ("Supports", "Holds")):
         for row in book.rows(sheet, key):
-            results = [
-                v for k, v in row.items() if k.startswith(("Tens", "Comp", "Disp", "React", "Length", "Out"))
-            ]
+            results = [v for k, v in row.items() if k.startswith(("Tens", "Comp", "Disp", "React", "Length", "Out"))]
             assert results
             assert all(value is None for value in results)
     workbook = openpyxl.load_workbook(book.path)
@@ -174,9 +172,7 @@ def test_numbers_are_names_too(triangle, make_book):
             row[:] = [{"A": 1, "B": 2.0, "C": 3}.get(value, value) for value in row]
     book = make_book(triangle)
     assert book.solve().exit_status == 0
-    assert book.column("Forces", "Member", "Loads [kN]") == pytest.approx(
-        {"AB": 10.0, "AC": -7.5, "BC": -12.5}
-    )
+    assert book.column("Forces", "Member", "Loads [kN]") == pytest.approx({"AB": 10.0, "AC": -7.5, "BC": -12.5})
 
 
 def test_digest_follows_inputs_and_not_looks(triangle, make_book):
@@ -254,9 +250,7 @@ def test_loads_per_length_and_per_projection_differ_by_the_slope(triangle, make_
     ]
     book = make_book(triangle)
     assert book.solve().exit_status == 0
-    reactions = {
-        (row["Joint"], row["Direction"]): row["Loads [kN]"] for row in book.rows("Reactions", "Joint")
-    }
+    reactions = {(row["Joint"], row["Direction"]): row["Loads [kN]"] for row in book.rows("Reactions", "Joint")}
     # AC is 5 m long and 4 m wide: 10 kN and 8 kN, half to each end, and 9 kN at the apex shared evenly.
     assert reactions["A", "y"] == pytest.approx(5 + 4.5)
     assert reactions["B", "y"] == pytest.approx(4 + 4.5)
@@ -272,10 +266,7 @@ def test_same_truss_in_kip_and_feet_agrees(triangle, make_book):
     ]
     triangle["Members"] = [
         ["Member", "From", "To", "Area [in2]", "E [ksi]"],
-        *(
-            [*row[:3], row[3] * 1e-6 / inch**2, row[4] * 1e6 / kip * inch**2]
-            for row in triangle["Members"][1:]
-        ),
+        *([*row[:3], row[3] * 1e-6 / inch**2, row[4] * 1e6 / kip * inch**2] for row in triangle["Members"][1:]),
     ]
     triangle["Loads"] = [["Joint", "Fx [kip]", "Fy [kip]"], ["C", 4 / kip, -12 / kip]]
     book = make_book(triangle, "customary.xlsx")

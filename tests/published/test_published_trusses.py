@@ -59,9 +59,7 @@ def tables(case: dict[str, Any]) -> dict[str, list[list[Any]]]:
     }
     if "prescribed_displacements" in case:
         settlements: list[list[Any]] = [["Case", "Joint", *(f"d{axis} [{length}]" for axis in axes)]]
-        for (joint, direction), movement in zip(
-            case["supports"], case["prescribed_displacements"], strict=True
-        ):
+        for (joint, direction), movement in zip(case["supports"], case["prescribed_displacements"], strict=True):
             if movement:
                 settlements.append(["LC1", joint, *(movement * component for component in direction)])
         sheets["Settlements"] = settlements
@@ -80,9 +78,7 @@ def found(book: Any, case: dict[str, Any], quantity: str) -> float:
         return value / (case["members"][where[0]]["A"] if kind == "S" else 1.0)
     if kind == "R":
         return book.rows("Reactions", "Joint")[int(where[0])][f"{combination} [{force}]"]
-    unit, size = (
-        ("in", {"in": 1.0, "ft": 12.0}) if length in {"in", "ft"} else ("mm", {"m": 1e3, "mm": 1.0, "cm": 10})
-    )
+    unit, size = ("in", {"in": 1.0, "ft": 12.0}) if length in {"in", "ft"} else ("mm", {"m": 1e3, "mm": 1.0, "cm": 10})
     joint, direction = where
     moved = {
         row["Direction"]: row[f"{combination} [{unit}]"] / size[length]
@@ -143,8 +139,7 @@ def test_25_bar_tower_meets_its_published_displacement(design, make_book):
     case = CASES["AO03"]
     areas = case["group_areas"][design]
     members = {
-        name: {**member, "EA": areas[member["group"] - 1] * case["E"]}
-        for name, member in case["members"].items()
+        name: {**member, "EA": areas[member["group"] - 1] * case["E"]} for name, member in case["members"].items()
     }
     book = make_book(tables({**case, "members": members}))
     assert book.solve().exit_status == 0, book.findings("stop")

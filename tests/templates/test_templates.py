@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 import zipfile
-from xml.etree import ElementTree
+from xml.etree import ElementTree as ET
 
 import openpyxl
 import pytest
@@ -22,10 +22,7 @@ from strutbook_templates.sheet_frame import is_about_z
 TEMPLATES = list(template_contents())
 #: Tables with a header row, on every template.
 TABLES_ON_SHEETS = [
-    pytest.param(name, table, id=f"{name}-{table.sheet}")
-    for name in TEMPLATES
-    for table in TABLES
-    if not table.labels
+    pytest.param(name, table, id=f"{name}-{table.sheet}") for name in TEMPLATES for table in TABLES if not table.labels
 ]
 CHART = {"c": "http://schemas.openxmlformats.org/drawingml/2006/chart"}
 
@@ -77,7 +74,7 @@ def sheet_meaning(sheet):
 def charts(path):
     with zipfile.ZipFile(path) as package:
         return {
-            name: ElementTree.tostring(ElementTree.fromstring(package.read(name)))
+            name: ET.tostring(ET.fromstring(package.read(name)))
             for name in package.namelist()
             if name.startswith("xl/charts/")
         }
@@ -213,7 +210,7 @@ def test_charts_follow_the_cells_that_a_run_fills(built, name):
     seen = set()
     with zipfile.ZipFile(built[name].path) as package:
         for chart in (1, 2):
-            root = ElementTree.fromstring(package.read(f"xl/charts/chart{chart}.xml"))
+            root = ET.fromstring(package.read(f"xl/charts/chart{chart}.xml"))
             assert root.find(".//c:dispBlanksAs", CHART).get("val") == "gap"
             axes = root.findall(".//c:valAx", CHART)
             assert [axis.find("c:delete", CHART).get("val") for axis in axes] == ["1", "1"]
@@ -233,13 +230,13 @@ def test_charts_follow_the_cells_that_a_run_fills(built, name):
 def test_plot_areas_have_the_ratio_of_the_frame(built):
     """With it, a square is drawn as a square."""
     with zipfile.ZipFile(built["demonstration.xlsx"].path) as package:
-        drawing = ElementTree.fromstring(package.read("xl/drawings/drawing1.xml"))
+        drawing = ET.fromstring(package.read("xl/drawings/drawing1.xml"))
         for number, extent in enumerate(drawing.iter(), start=0):
             if not extent.tag.endswith("}ext") or "cx" not in extent.attrib:
                 continue
             assert number
             size = int(extent.get("cx")), int(extent.get("cy"))
-            root = ElementTree.fromstring(package.read("xl/charts/chart1.xml"))
+            root = ET.fromstring(package.read("xl/charts/chart1.xml"))
             layout = root.find(".//c:plotArea/c:layout/c:manualLayout", CHART)
             width, height = (float(layout.find(f"c:{side}", CHART).get("val")) for side in "wh")
             assert layout.find("c:layoutTarget", CHART).get("val") == "inner"
@@ -250,7 +247,7 @@ def test_plot_areas_have_the_ratio_of_the_frame(built):
 def test_lines_are_told_apart_without_colour(built):
     """Tension, compression and no force differ in dash, and compression from tension in a grey print."""
     with zipfile.ZipFile(built["demonstration.xlsx"].path) as package:
-        root = ElementTree.fromstring(package.read("xl/charts/chart1.xml"))
+        root = ET.fromstring(package.read("xl/charts/chart1.xml"))
     dashes = {}
     for series in root.findall(".//c:ser", CHART):
         dash = series.find(".//{http://schemas.openxmlformats.org/drawingml/2006/main}prstDash")

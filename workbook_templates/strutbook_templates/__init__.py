@@ -29,9 +29,7 @@ def shape_names() -> list[str]:
     return list(SHAPES)
 
 
-def new_workbook(
-    path: str | PathLike[str], shape: str, *, units: str = "metric", **parameters: float | str
-) -> None:
+def new_workbook(path: str | PathLike[str], shape: str, *, units: str = "metric", **parameters: float | str) -> None:
     """Write a new workbook with all tables of the schema, filled in for a shape.
 
     Parameters

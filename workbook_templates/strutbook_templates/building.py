@@ -87,9 +87,7 @@ def _fill_table_sheet(sheet: Worksheet, table: Table, contents: Contents) -> Non
         header.value = contents.system.header(column)
         _dress_header(header, column.role)
         add_note(header, column, contents.system)
-        _dress_column(
-            sheet, header.column_letter, column, contents.system.unit(column), contents.system.header(column)
-        )
+        _dress_column(sheet, header.column_letter, column, contents.system.unit(column), contents.system.header(column))
         for row in range(FIRST_ROW, FIRST_ROW + shown):
             _dress_cell(cell_at(sheet, row, place), column, contents.system.unit(column))
     for offset, values in enumerate(rows):

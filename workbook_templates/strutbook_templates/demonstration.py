@@ -104,9 +104,7 @@ def _joint_loads(truss: Truss) -> list[Row]:
 
 def _member_loads(truss: Truss) -> list[Row]:
     """A cable duct under four bottom chord members, and a top chord that the sun warms."""
-    duct: list[Row] = [
-        {"Case": "G", "Member": f"L{i}-L{i + 1}", "Per": "length", "wy": -0.4} for i in range(4, 8)
-    ]
+    duct: list[Row] = [{"Case": "G", "Member": f"L{i}-L{i + 1}", "Per": "length", "wy": -0.4} for i in range(4, 8)]
     sun: list[Row] = [
         {"Case": "T", "Member": bar.name, "Temperature change": 15.0}
         for bar in truss.members

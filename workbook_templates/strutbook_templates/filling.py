@@ -56,11 +56,7 @@ def shape_contents(shape: Shape, values: Mapping[str, Value], system: UnitSystem
     truss = _truss(shape.name, values, numbers)
     if shape.name == "tower":
         return _tower(truss, numbers, system)
-    return (
-        _roof(truss, shape, numbers, system)
-        if shape.name == "fink"
-        else _girder(truss, shape, numbers, system)
-    )
+    return _roof(truss, shape, numbers, system) if shape.name == "fink" else _girder(truss, shape, numbers, system)
 
 
 def _truss(name: str, values: Mapping[str, Value], numbers: Mapping[str, float]) -> Truss:
@@ -134,8 +130,7 @@ def _tower(truss: Truss, numbers: Mapping[str, float], system: UnitSystem) -> Co
         for corner in "ABCD"
     ]
     sideways: list[Row] = [
-        {"Case": names["wind"], "Joint": joint, "Fx": round(wind * share, 6)}
-        for joint, share in truss.shares.items()
+        {"Case": names["wind"], "Joint": joint, "Fx": round(wind * share, 6)} for joint, share in truss.shares.items()
     ]
     rows["Loads"] = on_top + sideways
     warmer = {"metric": 20.0, "us": 35.0}[system.name]

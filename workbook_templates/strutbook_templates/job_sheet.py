@@ -19,9 +19,7 @@ _COUNT_OR_RESIDUAL = "[>=1]0;[>0]0.0E+00;0"
 _IN_A_SENTENCE = "Outcome"
 
 
-def fill_job_sheet(
-    sheet: Worksheet, table: Table, contents: Contents, guide: Sequence[tuple[str, str]]
-) -> None:
+def fill_job_sheet(sheet: Worksheet, table: Table, contents: Contents, guide: Sequence[tuple[str, str]]) -> None:
     """Labels in column A with values in column B; to the right the guide: sheets and what they hold."""
     cell = sheet.cell(4, 1, NOT_CHECKED_LINE)
     cell.font = look.CAUTION_FONT

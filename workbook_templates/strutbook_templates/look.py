@@ -55,12 +55,8 @@ CHOSEN_HEADER = DifferentialStyle(
     font=Font(bold=True, color="FFFFFF"), fill=PatternFill(bgColor=_INPUT_HEADER), border=_GRID
 )
 # Calc applies the first rule that holds and no other, so the sign brings the look of a result along.
-POSITIVE_FORCE = DifferentialStyle(
-    font=Font(color=TENSION), fill=PatternFill(bgColor=_RESULT_CELL), border=_GRID
-)
-NEGATIVE_FORCE = DifferentialStyle(
-    font=Font(color=COMPRESSION), fill=PatternFill(bgColor=_RESULT_CELL), border=_GRID
-)
+POSITIVE_FORCE = DifferentialStyle(font=Font(color=TENSION), fill=PatternFill(bgColor=_RESULT_CELL), border=_GRID)
+NEGATIVE_FORCE = DifferentialStyle(font=Font(color=COMPRESSION), fill=PatternFill(bgColor=_RESULT_CELL), border=_GRID)
 NEEDS_CARE = DifferentialStyle(font=Font(bold=True, color=INK), fill=PatternFill(bgColor=UNSAFE))
 UNSAFE_FILL = _solid(UNSAFE)
 INPUT_TAB, RESULT_TAB = _INPUT_HEADER, "9DB4B8"

@@ -84,9 +84,7 @@ class Shape:
                 takes = f"it takes {', '.join(names)}" if names else "it takes no parameters"
                 raise ValueError(f"the shape {self.name} has no parameter {name!r}; {takes}.")
         return {
-            parameter.name: parameter.checked(
-                given.get(parameter.name, parameter.defaults[system.name]), system
-            )
+            parameter.name: parameter.checked(given.get(parameter.name, parameter.defaults[system.name]), system)
             for parameter in self.parameters
         }
 
@@ -223,9 +221,7 @@ SHAPES = {
                     "imposed load on the top, downwards",
                     may_be_zero=True,
                 ),
-                _quantity(
-                    "wind", Dimension.LINE_LOAD, 2.0, 0.15, "wind on the height, along x", may_be_zero=True
-                ),
+                _quantity("wind", Dimension.LINE_LOAD, 2.0, 0.15, "wind on the height, along x", may_be_zero=True),
             ),
         ),
     )

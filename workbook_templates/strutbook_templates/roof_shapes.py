@@ -23,9 +23,7 @@ def fink(span: float, panels: int, rise: float) -> Truss:
     True
     """
     if panels not in _SUBDIVISIONS:
-        raise ValueError(
-            f"panels is {panels}, and the webs of a Fink truss halve again and again; give 4, 8 or 16."
-        )
+        raise ValueError(f"panels is {panels}, and the webs of a Fink truss halve again and again; give 4, 8 or 16.")
     if rise >= span / 2:
         raise ValueError(
             f"rise is {rise:g} and span {span:g}, and webs square to rafters of 45 degrees or more miss the "
@@ -48,9 +46,7 @@ def fink(span: float, panels: int, rise: float) -> Truss:
     heels = "L0", f"L{sum(name[0] == 'L' for name in joints) - 1}"
     panel = span / panels
     shares = {heels[0]: panel / 2, **{f"U{i}": panel for i in range(1, panels)}, heels[1]: panel / 2}
-    return Truss(
-        {name: joints[name] for name in order}, bars, {heels[0]: "x y", heels[1]: "y"}, shares, span, rise
-    )
+    return Truss({name: joints[name] for name in order}, bars, {heels[0]: "x y", heels[1]: "y"}, shares, span, rise)
 
 
 def _half(start: _Point, end: _Point, foot: _Point, subdivisions: int) -> list[tuple[_Point, _Point, str]]:
@@ -89,11 +85,7 @@ def _names(lines: list[tuple[_Point, _Point, str]], span: float, rise: float) ->
     lower = [point for point in points if point[1] == 0]
     # A joint is on the rafter when its height is what the slope gives there.
     slope = [rise * (1 - abs(2 * x / span - 1)) for x, _ in points]
-    upper = [
-        point
-        for point, height in zip(points, slope, strict=True)
-        if point[1] and np.isclose(point[1], height)
-    ]
+    upper = [point for point, height in zip(points, slope, strict=True) if point[1] and np.isclose(point[1], height)]
     between = [point for point in points if point not in lower and point not in upper]
     return (
         {point: f"L{i}" for i, point in enumerate(lower)}

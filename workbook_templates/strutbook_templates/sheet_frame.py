@@ -68,9 +68,7 @@ def add_note(cell: Cell, column: Column, system: UnitSystem, first: str = "") ->
     else:
         needed = "Needed" if column.required else "May be blank"
         parts.append(
-            f"{needed}: {column.expected}."
-            if column.kind is not Kind.TEXT or column.required
-            else f"{needed}."
+            f"{needed}: {column.expected}." if column.kind is not Kind.TEXT or column.required else f"{needed}."
         )
     text = "\n".join(part for part in parts if part)
     note = Comment(text, "strutbook")

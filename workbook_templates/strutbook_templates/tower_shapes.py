@@ -33,14 +33,10 @@ def square_tower(height: float, bays: int, base: float, top: float) -> Truss:
         bars += [_bar(start, end, "horizontal") for start, end in pairwise(ring)]
         falling = level % 2
         for (low, next_low), (high, next_high) in zip(pairwise(below), pairwise(ring), strict=True):
-            bars.append(
-                _bar(low, next_high, "face diagonal") if falling else _bar(next_low, high, "face diagonal")
-            )
+            bars.append(_bar(low, next_high, "face diagonal") if falling else _bar(next_low, high, "face diagonal"))
         bars.append(_bar(f"A{level}", f"C{level}", "plan brace"))
     bay = height / bays
-    shares = {
-        f"{corner}{level}": bay / (4 if level == bays else 2) for level in levels[1:] for corner in ("A", "D")
-    }
+    shares = {f"{corner}{level}": bay / (4 if level == bays else 2) for level in levels[1:] for corner in ("A", "D")}
     feet = {f"{corner}0": "x y z" for corner in _CORNERS}
     return Truss(joints, tuple(bars), feet, shares, base, height)
 

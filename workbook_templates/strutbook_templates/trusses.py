@@ -52,11 +52,7 @@ class Truss:
         """(supports,) joint indices and (supports, dimension) unit vectors of the held directions."""
         index = {name: place for place, name in enumerate(self.joints)}
         axes = np.eye(self.dimension)
-        pairs = [
-            (index[joint], "xyz".index(axis))
-            for joint, holds in self.supports.items()
-            for axis in holds.split()
-        ]
+        pairs = [(index[joint], "xyz".index(axis)) for joint, holds in self.supports.items() for axis in holds.split()]
         return (
             np.array([joint for joint, _ in pairs], dtype=np.int64),
             np.array([axes[axis] for _, axis in pairs]).reshape(-1, self.dimension),

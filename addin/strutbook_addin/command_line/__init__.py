@@ -37,9 +37,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
     verbs = parser.add_subparsers(dest="verb", metavar="VERB", required=True)
     works: dict[str, Callable[[argparse.Namespace], int]] = {}
     for verb, help_line in VERBS.items():
-        subparser = verbs.add_parser(
-            verb, help=help_line, description=help_line[0].upper() + help_line[1:] + "."
-        )
+        subparser = verbs.add_parser(verb, help=help_line, description=help_line[0].upper() + help_line[1:] + ".")
         # Only the verb that is asked for is loaded, so that help for all of them stays quick.
         if words[:1] == [verb]:
             module = import_module(f"strutbook_addin.command_line.{verb}")

@@ -66,9 +66,7 @@ def _highlights(results: Results) -> list[str]:
             f"largest {what:<12} {value:9.1f} kN in member {members[int(member)]}, "
             f"combination {combinations[int(combination)]}"
         )
-    text.append(
-        f"largest displacement {results.largest_displacement() * 1e3:6.1f} mm in a service combination"
-    )
+    text.append(f"largest displacement {results.largest_displacement() * 1e3:6.1f} mm in a service combination")
     residual = float(results.analysis.residual.max(initial=0.0))
     text.append(f"every joint balances to {residual:.0e} of the largest load")
     return text

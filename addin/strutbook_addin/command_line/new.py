@@ -38,9 +38,7 @@ def work(options: argparse.Namespace) -> int:
     from strutbook_templates import new_workbook
 
     file: Path = options.file
-    given = {
-        key: value for key, value in vars(options).items() if key not in {"file", "shape", "units", "verb"}
-    }
+    given = {key: value for key, value in vars(options).items() if key not in {"file", "shape", "units", "verb"}}
     problem = ""
     if file.suffix.lower() != ".xlsx":
         problem = f"{file} does not end in .xlsx. Name the workbook so."
@@ -76,7 +74,5 @@ def _shape_lines() -> list[str]:
                 f"{parameter.defaults[system.name]} {parameter.unit(system)}".strip()
                 for system in UNIT_SYSTEMS.values()
             ]
-            lines.append(
-                f"      --{parameter.name:<10} {'; '.join(dict.fromkeys(defaults))}: {parameter.meaning}"
-            )
+            lines.append(f"      --{parameter.name:<10} {'; '.join(dict.fromkeys(defaults))}: {parameter.meaning}")
     return lines

@@ -31,9 +31,7 @@ class Reporter:
             from tqdm import tqdm
 
             # A single small workbook is done before anybody could read a progress display.
-            self._bar = tqdm(
-                total=files, unit="workbook", leave=False, disable=files < 1, delay=0.5, file=sys.stderr
-            )
+            self._bar = tqdm(total=files, unit="workbook", leave=False, disable=files < 1, delay=0.5, file=sys.stderr)
 
     def stage(self, stage: str) -> None:
         """Show what is being done."""
@@ -112,8 +110,7 @@ def _results(results: Results) -> dict[str, object]:
         "combinations": list(combinations),
         "forces": dict(zip(model.geometry.members.names, results.forces.tolist(), strict=True)),
         "reactions": [
-            {**support, "values": values}
-            for support, values in zip(supports, results.reactions.tolist(), strict=True)
+            {**support, "values": values} for support, values in zip(supports, results.reactions.tolist(), strict=True)
         ],
     }
     if results.displacements is not None:

@@ -119,15 +119,12 @@ class OfflineWorkbook:
         """
         if any(name.casefold().startswith("_xmlsignatures/") for name in self._package.names()):
             raise UnwritableWorkbook(
-                "it carries a digital signature, which any change would break. "
-                "Remove the signature, or solve a copy."
+                "it carries a digital signature, which any change would break. Remove the signature, or solve a copy."
             )
         check_target(target)
         data = self._packed()
         if target.exists() and target.samefile(self._path) and _stamp(self._path) != self._stamp:
-            raise UnwritableWorkbook(
-                "it was changed by another program while it was being solved. Solve it again."
-            )
+            raise UnwritableWorkbook("it was changed by another program while it was being solved. Solve it again.")
         replace_file(target, data)
 
     def _part(self, sheet: str) -> SheetPart:

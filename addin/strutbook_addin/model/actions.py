@@ -23,9 +23,7 @@ _Lumping = Callable[[strutbook.Truss, ArrayLike, ArrayLike], FloatArray]
 class ActionReader:
     """Collects the actions of every case; the last case holds the misfits, which act always."""
 
-    def __init__(
-        self, geometry: Geometry, rigidity: Rigidity, held: Held, cases: Cases, findings: Findings
-    ) -> None:
+    def __init__(self, geometry: Geometry, rigidity: Rigidity, held: Held, cases: Cases, findings: Findings) -> None:
         self._geometry = geometry
         self._rigidity = rigidity
         self._held = held
@@ -95,8 +93,7 @@ class ActionReader:
                     self._findings,
                     int(row),
                     f"d{axis}",
-                    f"joint {table.text('Joint')[row]} is not held along {axis}, "
-                    "so no support can move it that way.",
+                    f"joint {table.text('Joint')[row]} is not held along {axis}, so no support can move it that way.",
                     "Remove the movement, or hold the joint on the sheet Supports.",
                 )
 

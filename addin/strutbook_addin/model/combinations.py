@@ -86,8 +86,7 @@ def read_combinations(table: TableData | None, cases: Cases, findings: Findings)
         if case is None:
             findings.add(
                 Level.STOP,
-                "this column holds factors, but there is no case "
-                f"{header}.{nearest(header, cases.names.names)}",
+                f"this column holds factors, but there is no case {header}.{nearest(header, cases.names.names)}",
                 "Write the name of a case as the header, or remove the column.",
                 sheet=table.layout.sheet,
                 row=table.layout.header_row,

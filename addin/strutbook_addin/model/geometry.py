@@ -82,9 +82,7 @@ def _extent(coordinates: FloatArray) -> float:
     return float(np.nanmax(span))
 
 
-def _report_joints_at_one_place(
-    table: TableData, names: Names, coordinates: FloatArray, findings: Findings
-) -> None:
+def _report_joints_at_one_place(table: TableData, names: Names, coordinates: FloatArray, findings: Findings) -> None:
     if len(coordinates) < 2 or np.isnan(coordinates).any():
         return
     step = max(_extent(coordinates) * SAME_PLACE, np.finfo(np.float64).tiny)

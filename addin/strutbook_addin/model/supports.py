@@ -85,9 +85,7 @@ def read_supports(table: TableData, geometry: Geometry, findings: Findings) -> H
         try:
             held = directions(holds, geometry.dimensions)
         except HoldsProblem as problem:
-            table.report(
-                findings, row, "Holds", _expected(holds, str(problem), geometry), "Write the direction so."
-            )
+            table.report(findings, row, "Holds", _expected(holds, str(problem), geometry), "Write the direction so.")
             continue
         for label, vector in held:
             joint.append(int(joints[row]))

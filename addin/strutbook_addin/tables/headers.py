@@ -140,9 +140,7 @@ def _example(column: Column) -> str:
     return f"{column.name} [{column.dimension.suggested[0]}]" if column.dimension else column.name
 
 
-def _report_errors_in_headers(
-    sheet: str, header_row: int, values: Sequence[CellValue], findings: Findings
-) -> None:
+def _report_errors_in_headers(sheet: str, header_row: int, values: Sequence[CellValue], findings: Findings) -> None:
     """A header that shows an error could be any column's, and that column would be missed silently."""
     for column, value in enumerate(values):
         if isinstance(value, ErrorValue):
@@ -165,9 +163,7 @@ def error_words(value: ErrorValue) -> str:
     return f"the error {value.text}" + (f" of the formula {value.formula}" if value.formula else "")
 
 
-def _match(
-    table: Table, sheet: str, header_row: int, headers: dict[int, str], findings: Findings
-) -> dict[str, int]:
+def _match(table: Table, sheet: str, header_row: int, headers: dict[int, str], findings: Findings) -> dict[str, int]:
     columns: dict[str, int] = {}
     for column, header in headers.items():
         known = table.by_normal_name.get(_normal_header(header)) or table.by_normal_name.get(normal(header))
@@ -252,9 +248,7 @@ def _report_rows_below(layout: Layout, grid: Grid, findings: Findings) -> None:
     """Rows below the blank row that ends a table are not read; say so when they hold a key."""
     if not layout.table.inputs:
         return
-    key = next(
-        (layout.columns[c.name] for c in layout.table.inputs if c.required and c.name in layout.columns), None
-    )
+    key = next((layout.columns[c.name] for c in layout.table.inputs if c.required and c.name in layout.columns), None)
     if key is None:
         return
     for row in range(layout.end_row + 1, len(grid)):

@@ -219,11 +219,7 @@ class _Reader:
 
     def _wrong(self, row: int, value: CellValue, question: str = "") -> None:
         expected = self._column.expected
-        if (
-            isinstance(value, (int, float))
-            and not isinstance(value, bool)
-            and LARGEST < abs(value) < math.inf
-        ):
+        if isinstance(value, (int, float)) and not isinstance(value, bool) and LARGEST < abs(value) < math.inf:
             expected += f" of at most {LARGEST:.0e}"
         self._add(
             row,

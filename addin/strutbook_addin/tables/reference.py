@@ -16,9 +16,7 @@ START, END = "<!-- tables -->", "<!-- end of tables -->"
 def reference() -> str:
     """Every table and column in Markdown."""
     parts = [_table(table) for table in TABLES if table not in RESULT_TABLES]
-    results = "\n".join(
-        f"| `{table.sheet}` | {table.meaning} | {_columns(table)} |" for table in RESULT_TABLES
-    )
+    results = "\n".join(f"| `{table.sheet}` | {table.meaning} | {_columns(table)} |" for table in RESULT_TABLES)
     parts.append(
         "Sheets that a run writes whole (it makes those that are missing):\n\n"
         f"| sheet | holds | columns |\n| --- | --- | --- |\n{results}\n"
@@ -40,9 +38,7 @@ def _table(table: Table) -> str:
     lines += [f"| {kind} | takes | meaning |", "| --- | --- | --- |"]
     lines += [f"| {_header(column)} | {_takes(column)} | {column.meaning} |" for column in table.inputs]
     if table.open_columns is not None:
-        lines.append(
-            f"| one column a {table.open_columns.of[:-1]} | a number | {table.open_columns.meaning} |"
-        )
+        lines.append(f"| one column a {table.open_columns.of[:-1]} | a number | {table.open_columns.meaning} |")
     if table.results:
         names = ", ".join(_header(column) for column in table.results)
         lines.append(f"\nResults: {names}.")

@@ -80,9 +80,7 @@ def result_layout(table: Table, sheet: str, grid: Grid) -> Layout:
         header_row = used + 2
         headers = {column: schema.name for column, schema in enumerate(table.columns)}
     else:
-        headers = {
-            column: str(value).strip() for column, value in enumerate(grid[header_row]) if not is_blank(value)
-        }
+        headers = {column: str(value).strip() for column, value in enumerate(grid[header_row]) if not is_blank(value)}
     places: dict[str, int] = {}
     for column, header in headers.items():
         places.setdefault(normal(header), column)

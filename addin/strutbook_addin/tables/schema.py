@@ -115,9 +115,7 @@ def normal(name: str) -> str:
     return "".join(name.split()).replace("_", "").casefold()
 
 
-def _name(
-    name: str, meaning: str, refers_to: str = "", *, required: bool = True, key: bool = False
-) -> Column:
+def _name(name: str, meaning: str, refers_to: str = "", *, required: bool = True, key: bool = False) -> Column:
     return Column(name, Kind.NAME, meaning, refers_to=refers_to, required=required, key=key)
 
 
@@ -209,15 +207,11 @@ MEMBERS = Table(
             "Modulus of elasticity; it goes before that of the material.",
             bound=Bound.POSITIVE,
         ),
-        _number(
-            "Misfit", Dimension.LENGTH, "How much longer than its place the member was made (+ too long)."
-        ),
+        _number("Misfit", Dimension.LENGTH, "How much longer than its place the member was made (+ too long)."),
         _result("Length", Dimension.LENGTH, "Distance between the joints."),
         _result("Tension", Dimension.FORCE, "Largest tension over the strength combinations."),
         _result_text("Tension in", "Combination with the largest tension."),
-        _result(
-            "Compression", Dimension.FORCE, "Largest compression over the strength combinations, negative."
-        ),
+        _result("Compression", Dimension.FORCE, "Largest compression over the strength combinations, negative."),
         _result_text("Compression in", "Combination with the largest compression."),
     ),
     required=True,
@@ -349,9 +343,7 @@ MATERIALS = Table(
     (
         _name("Material", "Name of the material.", key=True),
         _number("E", Dimension.STRESS, "Modulus of elasticity.", required=True, bound=Bound.POSITIVE),
-        _number(
-            "Density", Dimension.DENSITY, "Mass per volume; needed for self weight.", bound=Bound.NOT_NEGATIVE
-        ),
+        _number("Density", Dimension.DENSITY, "Mass per volume; needed for self weight.", bound=Bound.NOT_NEGATIVE),
         _number("Expansion", Dimension.EXPANSION, "Thermal expansion; needed for temperature changes."),
     ),
 )
@@ -368,13 +360,9 @@ REACTIONS = Table(
     "Force of every support on the truss in every combination, positive along its direction.",
     (
         Column("Joint", Kind.NAME, "Joint that is held.", Role.RESULT),
-        Column(
-            "Direction", Kind.TEXT, "Direction that is held; the reaction is positive along it.", Role.RESULT
-        ),
+        Column("Direction", Kind.TEXT, "Direction that is held; the reaction is positive along it.", Role.RESULT),
     ),
-    open_columns=OpenColumns(
-        "combinations", "Reaction, positive along the direction.", Role.RESULT, Dimension.FORCE
-    ),
+    open_columns=OpenColumns("combinations", "Reaction, positive along the direction.", Role.RESULT, Dimension.FORCE),
 )
 
 DISPLACEMENTS = Table(
@@ -391,9 +379,7 @@ FINDINGS = Table(
     "Findings",
     "What the last run has to say.",
     (
-        _result_text(
-            "Level", "stop: not solved; fail: does not pass; look: look at it; note: worth knowing."
-        ),
+        _result_text("Level", "stop: not solved; fail: does not pass; look: look at it; note: worth knowing."),
         _result_text("Where", "Link to the cell."),
         _result_text("What", "What was found and what was expected."),
         _result_text("What to do", "What mends it."),

@@ -107,9 +107,7 @@ _FACTORS: dict[Dimension, dict[str, float]] = {
     },
 }
 
-_SPELLING = str.maketrans(
-    {"²": "2", "³": "3", "⁻": "-", "·": "*", "°": "deg", " ": None, "^": None, "_": None}
-)
+_SPELLING = str.maketrans({"²": "2", "³": "3", "⁻": "-", "·": "*", "°": "deg", " ": None, "^": None, "_": None})
 _PRODUCT_OF_UNITS = re.compile(r"(?:1/)?[A-Za-zµ]+[1-4]?(?:[*/][A-Za-zµ]+[1-4]?){0,4}")
 _HEADER = re.compile(r"^\s*(?P<name>.*?)\s*[\[(]\s*(?P<unit>[^\[\]()]*?)\s*[\])]\s*$", re.DOTALL)
 

@@ -121,9 +121,7 @@ def leftover_rows(layout: Layout, grid: Grid, column: int, rows: int) -> int:
 
     They follow without a gap and hold results only; a note that the user typed further down stays.
     """
-    results = [
-        place for name, place in layout.columns.items() if layout.table.column(name).role is Role.RESULT
-    ]
+    results = [place for name, place in layout.columns.items() if layout.table.column(name).role is Role.RESULT]
     keys = [place for place in layout.headers if place not in results]
     row = start = layout.first_row + rows
     while (

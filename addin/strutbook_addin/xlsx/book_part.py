@@ -34,16 +34,12 @@ class BookPart:
     @property
     def from_1904(self) -> bool:
         """Whether dates are counted from 1904."""
-        return any(
-            attribute(element, "date1904") in ("1", "true") for element in children(self.root, "workbookPr")
-        )
+        return any(attribute(element, "date1904") in ("1", "true") for element in children(self.root, "workbookPr"))
 
     @property
     def calculates_on_load(self) -> bool:
         """Whether the workbook declares that stored values are to be calculated anew on opening."""
-        return any(
-            attribute(element, "fullCalcOnLoad") in ("1", "true") for element in children(self.root, "calcPr")
-        )
+        return any(attribute(element, "fullCalcOnLoad") in ("1", "true") for element in children(self.root, "calcPr"))
 
     def related(self, kind: str) -> str | None:
         """Part to which the workbook has a relationship of a kind (`styles`, `calcChain`), if it is there."""
@@ -88,9 +84,7 @@ def read_book_part(package: Package) -> BookPart:
     if local_name(root.tag) != "workbook" or namespace not in MAIN_NAMESPACES:
         raise UnreadableWorkbook(f"the file holds no spreadsheet (its main part {part} is another document).")
     relationships = tuple(relationships_of(package, part))
-    worksheets = {
-        found.identity: found.target for found in relationships if found.kind.endswith("/worksheet")
-    }
+    worksheets = {found.identity: found.target for found in relationships if found.kind.endswith("/worksheet")}
     sheets = {
         element.get("name", ""): worksheets[attribute(element, "id")]
         for element in children(root, "sheets", "sheet")

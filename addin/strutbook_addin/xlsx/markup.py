@@ -35,8 +35,7 @@ _ESCAPED = re.compile(r"_x([0-9A-Fa-f]{4})_")
 def forbidden_doctype(part: str) -> UnreadableWorkbook:
     """Refusal of a part that declares a document type: its entities could exhaust memory or read files."""
     return UnreadableWorkbook(
-        f"the part {part} declares a document type, which no spreadsheet program writes; "
-        "the file is not opened."
+        f"the part {part} declares a document type, which no spreadsheet program writes; the file is not opened."
     )
 
 

@@ -135,8 +135,7 @@ class BookChanges:
         part, data, root = self._small_part(_CONTENT_TYPES)
         prefix = _prefix(root.name)
         new = "".join(
-            f'<{prefix}Override PartName="/{name}" ContentType="{_WORKSHEET_CONTENT}"/>'
-            for name in names.values()
+            f'<{prefix}Override PartName="/{name}" ContentType="{_WORKSHEET_CONTENT}"/>' for name in names.values()
         )
         changes = [_inside(data, root, new)]
         gone = {f"/{name}".casefold() for name in removed}
@@ -173,8 +172,7 @@ class BookChanges:
         namespace = f' {declared}="{like.attributes[declared]}"' if declared in like.attributes else ""
         first = 1 + max(int(sheet.attributes.get("sheetId", "0")) for sheet in sheets.children)
         return "".join(
-            f'<{like.name}{namespace} name="{escape(sheet)}" sheetId="{first + place}" '
-            f'{identity_name}="{identity}"/>'
+            f'<{like.name}{namespace} name="{escape(sheet)}" sheetId="{first + place}" {identity_name}="{identity}"/>'
             for place, (sheet, identity) in enumerate(self._identities(names).items())
         )
 

@@ -101,9 +101,7 @@ class Package:
         try:
             return self._archive.read(found)
         except _DAMAGED as error:
-            raise UnreadableWorkbook(
-                f"the file is damaged in its part {found} ({error}). {_REPAIR}"
-            ) from error
+            raise UnreadableWorkbook(f"the file is damaged in its part {found} ({error}). {_REPAIR}") from error
 
     def packed(self, changed: Mapping[str, bytes], removed: frozenset[str] = frozenset()) -> bytes:
         """The file with some parts changed, added or removed; every other byte of its parts is copied.

@@ -32,9 +32,7 @@ def patched(sheet: SheetPart, edits: Mapping[tuple[int, int], Written]) -> bytes
             changes += _row_changes(sheet, row, values, columns_of.get(row, []))
         else:
             cells = b"".join(_new_cells(sheet, row, values))
-            new_rows[row] = (
-                f'<{sheet.prefix}row r="{row + 1}">'.encode() + cells + f"</{sheet.prefix}row>".encode()
-            )
+            new_rows[row] = f'<{sheet.prefix}row r="{row + 1}">'.encode() + cells + f"</{sheet.prefix}row>".encode()
     changes += _rows_inserted(sheet, new_rows)
     changes += _dimension_grown(sheet, by_row)
     return spliced(sheet.data, changes)
@@ -77,9 +75,7 @@ def _columns_by_row(sheet: SheetPart, wanted: Mapping[int, object]) -> dict[int,
     return columns
 
 
-def _row_changes(
-    sheet: SheetPart, row: int, values: Mapping[int, Written], columns: list[int]
-) -> Iterator[_Change]:
+def _row_changes(sheet: SheetPart, row: int, values: Mapping[int, Written], columns: list[int]) -> Iterator[_Change]:
     element = sheet.rows[row]
     opening = tag_at(sheet.data, element.start)
     empty = opening.endswith(b"/>")

@@ -32,9 +32,7 @@ def check_target(target: Path) -> None:
         # Replacing a file needs no right to write to it, so a file marked read-only must be asked for it.
         marked = not target.stat().st_mode & (stat.S_IWUSR | stat.S_IWGRP | stat.S_IWOTH)
         if marked or not os.access(target, os.W_OK):
-            raise UnwritableWorkbook(
-                "it is read-only. Allow writing to it, or name another place with --out."
-            )
+            raise UnwritableWorkbook("it is read-only. Allow writing to it, or name another place with --out.")
     folder = next(parent for parent in target.parents if parent.exists())
     if not os.access(folder, os.W_OK):
         raise UnwritableWorkbook(f"the folder {folder} is read-only. Name another place with --out.")

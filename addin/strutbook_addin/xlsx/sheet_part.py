@@ -88,9 +88,7 @@ class SheetPart:
     column_styles: list[tuple[int, int, int]] = field(default_factory=list)  #: first and last column, format
     merged: list[Area] = field(default_factory=list)
     arrays: list[Area] = field(default_factory=list)  #: array formulas and data tables
-    shared_areas: dict[str, tuple[int, int]] = field(
-        default_factory=dict
-    )  #: cell that holds each shared formula
+    shared_areas: dict[str, tuple[int, int]] = field(default_factory=dict)  #: cell that holds each shared formula
     shared_users: set[str] = field(default_factory=set)  #: shared formulas on which further cells depend
     table_relationships: list[str] = field(default_factory=list)
 
@@ -124,9 +122,7 @@ def area_of(reference: str) -> Area:
         raise ValueError(f"{reference!r} is no reference to cells")
     corners = [(int(end.group(2)) - 1, column_number(end.group(1))) for end in ends if end]
     first, last = corners[0], corners[-1]
-    return Area(
-        min(first[0], last[0]), min(first[1], last[1]), max(first[0], last[0]), max(first[1], last[1])
-    )
+    return Area(min(first[0], last[0]), min(first[1], last[1]), max(first[0], last[0]), max(first[1], last[1]))
 
 
 def scan(data: bytes, part: str) -> SheetPart:
@@ -174,9 +170,7 @@ class _Scanner:
         prefix, _, local = name.rpartition(":")
         namespace = attributes.get(f"xmlns:{prefix}" if prefix else "xmlns", "")
         if local != "worksheet" or namespace not in MAIN_NAMESPACES:
-            raise UnreadableWorkbook(
-                f"the part {self._sheet.name} is no worksheet ({name} in {namespace!r})."
-            )
+            raise UnreadableWorkbook(f"the part {self._sheet.name} is no worksheet ({name} in {namespace!r}).")
         self._sheet.prefix = f"{prefix}:" if prefix else ""
         self._take_cells()
 
