@@ -91,9 +91,18 @@ class Area(NamedTuple):
     columns: int
 
 
-#: What a run clears before it writes: the numbers of the charts and the sentences above them.
+def header(line: Line, axis: str) -> str:
+    """Header above the numbers of a line.
+
+    >>> header(Line.TENSION, "x")
+    'tension, x'
+    """
+    return f"{line.value}, {axis}"
+
+
+#: What a run fills or clears: the numbers of each line and the sentences above the charts.
 AREAS = (
-    Area(DATA_FIRST_ROW, DATA_FIRST_COLUMN, DATA_ROWS, 2 * len(Line)),
+    *(Area(DATA_FIRST_ROW, line.column, DATA_ROWS, 2) for line in Line),
     *(Area(*corner, 1, 1) for corner in (ROOM_CELL, FORCES_CELL, DEFLECTED_CELL)),
 )
 

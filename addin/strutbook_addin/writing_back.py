@@ -9,6 +9,7 @@ import numpy as np
 
 from strutbook_addin.findings import Finding, Findings
 from strutbook_addin.outcome import Outcome
+from strutbook_addin.picture_writing import write_picture
 from strutbook_addin.results import Results
 from strutbook_addin.sheets import LINK, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
@@ -44,6 +45,7 @@ def write_results(sheets: Sheets, outcome: Outcome, workbook: Workbook) -> Outco
         _clear(writer, workbook)
     else:
         _fill(writer, outcome.results, workbook)
+    write_picture(sheets, writer, outcome.results)
     outcome = replace(outcome, findings=tuple(findings))
     _write_job(writer, outcome, workbook)
     outcome = replace(outcome, findings=tuple(findings))

@@ -59,7 +59,8 @@ def fill_picture_sheet(workbook: Workbook, contents: Contents) -> Worksheet:
         sheet.cell(row + 1, column + 1).font = look.MEANING_FONT
     for line in Line:
         for offset, axis in enumerate("xy"):
-            cell = sheet.cell(picture.DATA_HEADER_ROW + 1, line.column + 1 + offset, f"{line.value}, {axis}")
+            header = picture.header(line, axis)
+            cell = sheet.cell(picture.DATA_HEADER_ROW + 1, line.column + 1 + offset, header)
             cell.font = look.NUMBERS_FONT
     cell = sheet.cell(
         picture.DATA_HEADER_ROW, picture.DATA_FIRST_COLUMN + 1, "Numbers of the charts; a run writes them."

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import os
 import sys
 from collections.abc import Callable, Sequence
 from importlib import import_module
@@ -50,4 +51,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
         from strutbook_addin.command_line.printing import say
 
         say("strutbook: interrupted; the file in hand was left as it was.", file=sys.stderr)
+        return 2
+    except BrokenPipeError:
+        # Whoever was reading (head, a pager) has had enough; the last flush must not fail again.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
         return 2

@@ -9,7 +9,7 @@ from strutbook_addin.findings import Findings
 from strutbook_addin.model.actions import ActionReader
 from strutbook_addin.model.combinations import Combinations, read_cases, read_combinations
 from strutbook_addin.model.geometry import Geometry, read_geometry
-from strutbook_addin.model.rigidity import read_rigidity
+from strutbook_addin.model.rigidity import Rigidity, read_rigidity
 from strutbook_addin.model.supports import Held, read_supports
 from strutbook_addin.tables.reading import TableData
 
@@ -20,6 +20,7 @@ class Model:
 
     geometry: Geometry
     held: Held
+    rigidity: Rigidity
     combinations: Combinations
     truss: strutbook.Truss
     actions: strutbook.Actions
@@ -50,4 +51,4 @@ def build_model(tables: dict[str, TableData], findings: Findings) -> Model | Non
         supports=strutbook.Supports(held.joint, held.direction, held.stiffness),
         axial_rigidity=rigidity.axial,
     )
-    return Model(geometry, held, combinations, truss, reader.actions(truss))
+    return Model(geometry, held, rigidity, combinations, truss, reader.actions(truss))
