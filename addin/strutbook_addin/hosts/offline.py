@@ -4,28 +4,24 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from pathlib import Path
 
-from strutbook_addin.findings import Finding, Level
-from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Grid, Refusal, Written, cell_name, is_ours
+from strutbook_addin.findings import Finding
+from strutbook_addin.sheets import CellValue, Formula, Grid, Refusal, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart, read_book_part
 from strutbook_addin.xlsx.cell_values import value_of
+from strutbook_addin.xlsx.dependence import following_sheets
 from strutbook_addin.xlsx.errors import UnreadableWorkbook, UnwritableWorkbook
-from strutbook_addin.xlsx.markup import attribute, damaged, parse
+from strutbook_addin.xlsx.formula_values import formula_values
+from strutbook_addin.xlsx.markup import damaged
 from strutbook_addin.xlsx.new_parts import BookChanges
+from strutbook_addin.xlsx.objections import Objections
 from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.patching import patched, stored_values_changed
-from strutbook_addin.xlsx.recalculation import (
-    Recalculated,
-    recalculated,
-    refreshed_values,
-    same_value,
-    user_formulas,
-)
-from strutbook_addin.xlsx.relationships import relationships_of
+from strutbook_addin.xlsx.recalculation import Recalculated, recalculated, refreshed_values, user_formulas
 from strutbook_addin.xlsx.saving import check_target, replace_file
-from strutbook_addin.xlsx.sheet_part import Cell, SheetPart, area_of, scan
+from strutbook_addin.xlsx.sheet_part import Cell, SheetPart, scan
 
 #: Most cells, empty ones between them included, that a sheet is read into.
 GRID_LIMIT = 5_000_000
@@ -42,11 +38,10 @@ class OfflineWorkbook:
         self._book = book
         self._stamp = stamp
         self._parts: dict[str, SheetPart] = {}
-        self._blocked: dict[str, dict[_Place, str]] = {}
+        self._objections: dict[str, Objections] = {}
         self._edits: dict[str, dict[_Place, Written]] = {}
         self._findings: list[Finding] = []
         self._original: Recalculated | None = None
-        self._formula_gone = False
 
     @classmethod
     def open(cls, path: Path) -> OfflineWorkbook:
@@ -85,16 +80,18 @@ class OfflineWorkbook:
             for place, value in _places(row, column, values):
                 edits[place] = value
             return []
-        part, blocked = self._part(sheet), self._blocked_cells(sheet)
+        cells, objections = self._part(sheet).cells, self._objections_on(sheet)
         edits = self._edits.setdefault(sheet, {})
         refusals: list[Refusal] = []
         for place, value in _places(row, column, values):
-            cell = part.cells.get(place)
-            reason = self._objection(place, cell, value, blocked)
+            cell = cells.get(place)
+            if self._holds(cell, value):
+                edits.pop(place, None)
+                continue
+            objection = objections.to_clearing if value is None else objections.to_writing
+            reason = objection(place, cell)
             if reason:
                 refusals.append(Refusal(sheet, *place, reason))
-            elif self._holds(cell, value):
-                edits.pop(place, None)
             else:
                 edits[place] = value
         return refusals
@@ -147,86 +144,15 @@ class OfflineWorkbook:
         except (ValueError, IndexError) as error:
             raise damaged(f"{part.name}, cell {cell_name(*place)},", error) from error
         if part.has_formulas:
-            values.update(self._calculated(sheet, part))
+            found = formula_values(sheet, part, book, self._recalculated_original)
+            values.update(found.values)
+            self._findings.extend(found.findings(sheet))
         return values
-
-    def _calculated(self, sheet: str, part: SheetPart) -> dict[_Place, CellValue]:
-        """Values of formulas that store none, or one that the workbook itself declares out of date."""
-        on_load = self._book.calculates_on_load
-        wanted = {place: cell for place, cell in user_formulas(part) if on_load or cell.awaits_value}
-        if not wanted:
-            return {}
-        calculated = self._recalculated_original()
-        cells = calculated.cells(sheet)
-        values: dict[_Place, CellValue] = {}
-        done: list[_Place] = []
-        unsure: list[_Place] = []
-        for place, cell in wanted.items():
-            new = cells.get(place)
-            failed = new is None or new.kind == "e"
-            if cell.awaits_value:
-                if new is None:
-                    error = f"not calculated ({calculated.reason or 'the library left it out'})"
-                    values[place] = ErrorValue(error, f"={cell.formula}")
-                    continue
-                new.attributes.setdefault("s", cell.attributes.get("s", "0"))
-                values[place] = value_of(new, calculated.book or self._book)
-                if isinstance(values[place], ErrorValue):
-                    values[place] = ErrorValue(new.value or "", f"={cell.formula}")
-                else:
-                    done.append(place)
-            elif failed and (new is None or not same_value(new, cell)):
-                unsure.append(place)
-            elif new is not None and not same_value(new, cell):
-                values[place] = value_of(new, calculated.book or self._book)
-                done.append(place)
-        self._note_calculated(sheet, done, unsure)
-        return values
-
-    def _note_calculated(self, sheet: str, done: list[_Place], unsure: list[_Place]) -> None:
-        if done:
-            self._findings.append(
-                Finding(
-                    Level.NOTE,
-                    f"the file stores no current value for {_listed(done)}; calculated here.",
-                    "Open the workbook in your spreadsheet program and save it to have its values used.",
-                    sheet,
-                    *done[0],
-                )
-            )
-        if unsure:
-            self._findings.append(
-                Finding(
-                    Level.LOOK,
-                    f"{_listed(unsure)} could not be calculated here; the stored values were used, "
-                    "though the file declares them out of date.",
-                    "Open the workbook in your spreadsheet program, save it, and solve again.",
-                    sheet,
-                    *unsure[0],
-                )
-            )
 
     def _recalculated_original(self) -> Recalculated:
         if self._original is None:
-            self._original = recalculated(self._package, self._package.data)
+            self._original = recalculated(self._package)
         return self._original
-
-    def _objection(self, place: _Place, cell: Cell | None, value: Written, blocked: dict[_Place, str]) -> str:
-        """Why a cell is not written, or nothing."""
-        if cell is not None and cell.formula is not None:
-            if not is_ours(cell.formula):
-                return (
-                    f"a formula of yours stands there (={cell.formula})"
-                    if cell.formula
-                    else ("a formula of yours stands there")
-                )
-            self._formula_gone = self._formula_gone or not isinstance(value, Formula)
-        reason = blocked.get(place, "")
-        if reason and value is None and (cell is None or cell.value is None):
-            return ""
-        if reason.startswith("it is the header") and self._holds(cell, value):
-            return ""
-        return reason
 
     def _holds(self, cell: Cell | None, value: Written) -> bool:
         """Whether a cell stores a value already."""
@@ -239,39 +165,10 @@ class OfflineWorkbook:
             return not isinstance(stored, bool) and stored == value
         return type(stored) is type(value) and stored == value
 
-    def _blocked_cells(self, sheet: str) -> dict[_Place, str]:
-        if sheet not in self._blocked:
-            part = self._part(sheet)
-            blocked: dict[_Place, str] = {}
-            for area in part.arrays:
-                for row in range(area.first_row, area.last_row + 1):
-                    for column in range(area.first_column, area.last_column + 1):
-                        blocked[row, column] = "it belongs to an array formula or a data table of yours"
-            for area in part.merged:
-                for row in range(area.first_row, area.last_row + 1):
-                    for column in range(area.first_column, area.last_column + 1):
-                        blocked[row, column] = "it is hidden under a merged cell; unmerge it"
-                blocked.pop((area.first_row, area.first_column), None)
-            blocked.update(self._table_headers(part))
-            self._blocked[sheet] = blocked
-        return self._blocked[sheet]
-
-    def _table_headers(self, part: SheetPart) -> dict[_Place, str]:
-        """Header cells of the tables of a sheet: their texts name the tables' columns."""
-        if not part.table_relationships:
-            return {}
-        headers: dict[_Place, str] = {}
-        for relationship in relationships_of(self._package, part.name):
-            if relationship.identity not in part.table_relationships:
-                continue
-            root = parse(self._package.read(relationship.target), relationship.target)
-            if attribute(root, "headerRowCount") == "0":
-                continue
-            area = area_of(attribute(root, "ref"))
-            name = attribute(root, "displayName")
-            for column in range(area.first_column, area.last_column + 1):
-                headers[area.first_row, column] = f"it is the header of a column of the table {name}"
-        return headers
+    def _objections_on(self, sheet: str) -> Objections:
+        if sheet not in self._objections:
+            self._objections[sheet] = Objections(self._package, self._part(sheet))
+        return self._objections[sheet]
 
     def _packed(self) -> bytes:
         """The file with everything that was changed."""
@@ -282,34 +179,55 @@ class OfflineWorkbook:
                 if any(value is not None for value in edits.values()):
                     changes.new_sheets[sheet] = edits
             elif edits:
-                parts[self._package.find(self._book.sheets[sheet]) or ""] = patched(self._part(sheet), edits)
-        formulas = self._sheets_with_formulas() if parts else []
+                part = self._part(sheet)
+                parts[self._file_name(sheet)] = patched(part, edits)
+                changes.drop_calculation_chain |= _formula_goes(part, edits)
+        formulas = self._sheets_with_formulas() if parts else {}
         if formulas:
             changes.calculate_on_load = True
             self._refresh(parts, formulas)
-        changes.drop_calculation_chain = self._formula_gone
         changed, removed = changes.parts()
         return self._package.packed(parts | changed, removed)
 
-    def _sheets_with_formulas(self) -> list[str]:
-        """Sheets with formulas of the user's."""
-        return [
-            sheet
-            for sheet, part in self._book.sheets.items()
-            if (sheet in self._parts or _FORMULA.search(self._package.read(part)))
-            and any(True for _ in user_formulas(self._part(sheet)))
-        ]
+    def _sheets_with_formulas(self) -> dict[str, list[str]]:
+        """Sheets with formulas of the user's, and the texts of these."""
+        found: dict[str, list[str]] = {}
+        for sheet, part in self._book.sheets.items():
+            if sheet in self._parts or _FORMULA.search(self._package.read(part)):
+                texts = [cell.formula or "" for _, cell in user_formulas(self._part(sheet))]
+                if texts:
+                    found[sheet] = texts
+        return found
 
-    def _refresh(self, parts: dict[str, bytes], formulas: list[str]) -> None:
+    def _refresh(self, parts: dict[str, bytes], formulas: dict[str, list[str]]) -> None:
         """Keep no stored value of a formula that follows from what was overwritten."""
+        written = {sheet for sheet, edits in self._edits.items() if edits}
+        following = set(formulas)
+        if not self._book.has_macros:
+            following = following_sheets(written, formulas, self._book.defined_names)
+        if not following:
+            return
         before = self._recalculated_original()
-        after = recalculated(self._package, self._package.packed(parts))
-        for sheet in formulas:
-            part = self._package.find(self._book.sheets[sheet]) or ""
-            now = scan(parts.get(part, self._part(sheet).data), part)
+        after = recalculated(Package(self._package.packed(parts)))
+        for sheet in following:
+            part = self._file_name(sheet)
+            now = scan(parts[part], part) if part in parts else self._part(sheet)
             values = refreshed_values(now, before.cells(sheet), after.cells(sheet))
             if values:
                 parts[part] = stored_values_changed(now, values)
+
+    def _file_name(self, sheet: str) -> str:
+        """Name of the part of a sheet as the file has it."""
+        part = self._book.sheets[sheet]
+        return self._package.find(part) or part
+
+
+def _formula_goes(part: SheetPart, edits: Mapping[_Place, Written]) -> bool:
+    """Whether a formula is overwritten by something else, so that the calculation chain is wrong."""
+    return any(
+        place in part.cells and part.cells[place].formula is not None and not isinstance(value, Formula)
+        for place, value in edits.items()
+    )
 
 
 def _stamp(path: Path) -> tuple[int, int]:
@@ -347,9 +265,3 @@ def _grid(values: dict[_Place, CellValue], sheet: str) -> Grid:
         line.extend([None] * (column - len(line)))
         line.append(value)
     return grid
-
-
-def _listed(places: list[_Place]) -> str:
-    names = ", ".join(cell_name(*place) for place in places[:6])
-    more = f" and {len(places) - 6} more" if len(places) > 6 else ""
-    return f"the formula{'s' if len(places) > 1 else ''} in {names}{more}"

@@ -15,7 +15,7 @@ from strutbook_addin.xlsx.markup import (
     parse,
     plain_text,
 )
-from strutbook_addin.xlsx.number_formats import date_styles
+from strutbook_addin.xlsx.number_formats import Shown, date_styles
 from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.relationships import Relationship, relationships_of
 
@@ -31,7 +31,7 @@ class BookPart:
     sheets: dict[str, str]  #: part of each worksheet by the name of the sheet, in their order
     other_sheets: tuple[str, ...]  #: names of sheets without cells: charts, dialogs
 
-    @property
+    @cached_property
     def from_1904(self) -> bool:
         """Whether dates are counted from 1904."""
         return any(attribute(element, "date1904") in ("1", "true") for element in children(self.root, "workbookPr"))
@@ -40,6 +40,19 @@ class BookPart:
     def calculates_on_load(self) -> bool:
         """Whether the workbook declares that stored values are to be calculated anew on opening."""
         return any(attribute(element, "fullCalcOnLoad") in ("1", "true") for element in children(self.root, "calcPr"))
+
+    @property
+    def defined_names(self) -> dict[str, str]:
+        """What the names of the workbook stand for, as formulas."""
+        return {
+            element.get("name", ""): element.text or ""
+            for element in children(self.root, "definedNames", "definedName")
+        }
+
+    @property
+    def has_macros(self) -> bool:
+        """Whether the workbook brings functions of its own, which may read any cell."""
+        return self.related("vbaProject") is not None
 
     def related(self, kind: str) -> str | None:
         """Part to which the workbook has a relationship of a kind (`styles`, `calcChain`), if it is there."""
@@ -57,10 +70,10 @@ class BookPart:
         return [plain_text(rich_text(item)) for item in parse(self.package.read(part), part)]
 
     @cached_property
-    def date_styles(self) -> frozenset[int]:
-        """Indices of cell formats that show dates or times."""
+    def date_styles(self) -> dict[str, Shown]:
+        """Cell formats that show dates or times, by their index as cells write it."""
         part = self.related("styles")
-        return frozenset() if part is None else date_styles(parse(self.package.read(part), part))
+        return {} if part is None else date_styles(parse(self.package.read(part), part))
 
 
 def read_book_part(package: Package) -> BookPart:
@@ -91,8 +104,24 @@ def read_book_part(package: Package) -> BookPart:
         if attribute(element, "id") in worksheets
     }
     names = [element.get("name", "") for element in children(root, "sheets", "sheet")]
+    _check_sheets(names, sheets, package)
     others = tuple(name for name in names if name not in sheets)
     return BookPart(package, part, root, relationships, sheets, others)
+
+
+def _check_sheets(names: list[str], sheets: dict[str, str], package: Package) -> None:
+    """Refuse a workbook in which it is not clear which cells a sheet has."""
+    if len({name.casefold() for name in names}) < len(names):
+        raise UnreadableWorkbook(
+            "the file holds two sheets of one name. "
+            "Open it in your spreadsheet program, let it repair the file, and save it again."
+        )
+    parts = [package.find(part) or part for part in sheets.values()]
+    if len(set(parts)) < len(parts):
+        raise UnreadableWorkbook(
+            "the file holds two sheets that share their cells. "
+            "Open it in your spreadsheet program, let it repair the file, and save it again."
+        )
 
 
 def rich_text(item: ET.Element) -> str:

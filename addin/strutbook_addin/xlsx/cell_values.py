@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from datetime import datetime
+from datetime import date, datetime, time
 from html import escape
 
 from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Written, cell_name
@@ -14,6 +14,8 @@ from strutbook_addin.xlsx.sheet_part import Cell
 
 #: Attributes that a cell keeps when its value changes: its format, and whether its phonetic reading shows.
 _KEPT = ("s", "ph")
+#: Longest text of a cell; a spreadsheet program would call a workbook with a longer one damaged.
+TEXT_LIMIT = 32_767
 
 
 def value_of(cell: Cell, book: BookPart) -> CellValue:
@@ -25,26 +27,45 @@ def value_of(cell: Cell, book: BookPart) -> CellValue:
         When what it stores is not what its type says.
     """
     text = cell.value
-    kind = cell.kind
-    if text is None or (not text and kind not in ("str", "inlineStr")):
+    if text is None:
         return None
+    attributes = cell.attributes
+    kind = attributes.get("t", "n")
     if kind == "n":
+        if not text:
+            return None
         number = float(text)
-        if cell.style and cell.style in book.date_styles:
-            return date_of(number, book.from_1904)
-        return number
-    if kind == "s":
-        return book.shared_texts[int(text)]
+        if "s" in attributes and (shown := book.date_styles.get(attributes["s"])):
+            return shown(number, book.from_1904)
+        # A number too large for a float is no number that could be calculated with.
+        return number if math.isfinite(number) else ErrorValue(text)
     if kind in ("str", "inlineStr"):
         return plain_text(text)
+    if not text:
+        return None
+    if kind == "s":
+        return book.shared_texts[_index(text)]
     if kind == "b":
         return text.strip() in ("1", "true")
     if kind == "e":
         return ErrorValue(text, f"={cell.formula}" if cell.formula else "")
     if kind == "d":
-        moment = datetime.fromisoformat(text)
-        return moment.date() if "T" not in text else moment
+        return _iso_moment(text.strip())
     raise ValueError(f"{kind!r} is no type of a cell")
+
+
+def _index(text: str) -> int:
+    index = int(text)
+    if index < 0:
+        raise ValueError(f"there is no shared text {text}")
+    return index
+
+
+def _iso_moment(text: str) -> datetime | date | time:
+    if "-" not in text:
+        return time.fromisoformat(text.removeprefix("T"))
+    moment = datetime.fromisoformat(text)
+    return moment.replace(tzinfo=None) if "T" in text else moment.date()
 
 
 def markup(row: int, column: int, value: Written, attributes: dict[str, str], prefix: str) -> bytes:
@@ -65,11 +86,27 @@ def markup(row: int, column: int, value: Written, attributes: dict[str, str], pr
         if isinstance(value.value, str):
             stored = f"<{prefix}v>{text_markup(value.value)}</{prefix}v>"
             return f'{head} t="str">{formula}{stored}{close}'.encode()
-        return f"{head}>{formula}<{prefix}v>{value.value!r}</{prefix}v>{close}".encode()
+        number = number_text(value.value)
+        stored = f"<{prefix}v>{number}</{prefix}v>" if number else ""
+        return f"{head}>{formula}{stored}{close}".encode()
     if isinstance(value, str):
+        value = value[:TEXT_LIMIT]
         space = ' xml:space="preserve"' if value != value.strip() or "\n" in value else ""
         text = f"<{prefix}is><{prefix}t{space}>{text_markup(value)}</{prefix}t></{prefix}is>"
         return f'{head} t="inlineStr">{text}{close}'.encode()
-    if value is None or not math.isfinite(value):
+    number = "" if value is None else number_text(value)
+    if not number:
         return f"{head}/>".encode()
-    return f"{head}><{prefix}v>{value!r}</{prefix}v>{close}".encode()
+    return f"{head}><{prefix}v>{number}</{prefix}v>{close}".encode()
+
+
+def number_text(number: float) -> str:
+    """A number as a cell stores it; nothing for what the format cannot hold.
+
+    >>> number_text(0.1), number_text(3), number_text(float("inf"))
+    ('0.1', '3', '')
+    """
+    if not math.isfinite(number):
+        return ""
+    # Numbers of numpy are floats too, with a `repr` of their own.
+    return repr(number) if type(number) is int else repr(float(number))

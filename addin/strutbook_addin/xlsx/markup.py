@@ -8,6 +8,7 @@ from collections.abc import Iterable
 from html import escape
 from xml.etree import ElementTree as ET
 
+from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 
 #: Namespaces of spreadsheet parts: transitional and strict (ISO/IEC 29500).
@@ -21,22 +22,21 @@ RELATIONSHIP_NAMESPACES = (
 )
 
 _DECLARED_ENCODING = re.compile(rb"""^<\?xml[^>]*?encoding\s*=\s*["']([A-Za-z0-9._-]+)["'][^>]*\?>""")
-_BYTE_ORDER_MARKS = (
+#: How a part in UTF-16 begins, with a byte order mark or without.
+_UTF_16 = (
     (codecs.BOM_UTF16_LE, "utf-16"),
     (codecs.BOM_UTF16_BE, "utf-16"),
+    (b"<\0", "utf-16-le"),
+    (b"\0<", "utf-16-be"),
 )
 #: A start tag or an empty element; `>` may stand inside an attribute's value.
 _TAG = re.compile(rb"""<[^\s/>]+(?:[^>"']|"[^"]*"|'[^']*')*>""")
+#: One attribute of a tag; found one after the other, so that none is looked for inside a value.
+_ATTRIBUTE = re.compile(rb"""\s+([^\s=<>"']+)\s*=\s*(?:"[^"]*"|'[^']*')""")
 #: What XML 1.0 cannot hold, and text that reads like the escape for it.
 _TO_ESCAPE = re.compile(r"[\x00-\x08\x0b\x0c\x0e-\x1f\ud800-\udfff\ufffe\uffff]|\r|_(?=x[0-9A-Fa-f]{4}_)")
+_SURROGATES = re.compile(r"[\ud800-\udfff]")
 _ESCAPED = re.compile(r"_x([0-9A-Fa-f]{4})_")
-
-
-def forbidden_doctype(part: str) -> UnreadableWorkbook:
-    """Refusal of a part that declares a document type: its entities could exhaust memory or read files."""
-    return UnreadableWorkbook(
-        f"the part {part} declares a document type, which no spreadsheet program writes; the file is not opened."
-    )
 
 
 class _NoDoctype(ET.TreeBuilder):
@@ -103,7 +103,7 @@ def attribute(element: ET.Element, name: str) -> str:
 
 def as_utf8(data: bytes, part: str) -> bytes:
     """The same part in UTF-8, in which byte offsets can be trusted; UTF-8 itself comes back as it is."""
-    encoding = next((name for mark, name in _BYTE_ORDER_MARKS if data.startswith(mark)), "")
+    encoding = next((name for mark, name in _UTF_16 if data.startswith(mark)), "")
     if not encoding:
         declared = _DECLARED_ENCODING.match(data)
         encoding = declared.group(1).decode("ascii") if declared else "utf-8"
@@ -144,12 +144,11 @@ def with_attribute(tag: bytes, name: str, value: str | None) -> bytes:
     b'<c r="A1">'
     """
     new = b"" if value is None else f' {name}="{value}"'.encode()
-    pattern = rb"\s+" + re.escape(name.encode()) + rb"""\s*=\s*(?:"[^"]*"|'[^']*')"""
-    replaced, count = re.subn(pattern, lambda _: new, tag, count=1)
-    if count or value is None:
-        return replaced
+    for found in _ATTRIBUTE.finditer(tag):
+        if found.group(1) == name.encode():
+            return tag[: found.start()] + new + tag[found.end() :]
     end = -2 if tag.endswith(b"/>") else -1
-    return tag[:end].rstrip() + new + tag[end:]
+    return tag[:end].rstrip() + new + tag[end:] if new else tag
 
 
 def spliced(data: bytes, changes: Iterable[tuple[int, int, bytes]]) -> bytes:
@@ -182,4 +181,10 @@ def plain_text(text: str) -> str:
     >>> plain_text("two_x000D_\\nlines"), plain_text("_x005F_x0041_")
     ('two\\r\\nlines', '_x0041_')
     """
-    return _ESCAPED.sub(lambda found: chr(int(found.group(1), 16)), text) if "_x" in text else text
+    if "_x" not in text:
+        return text
+    text = _ESCAPED.sub(lambda found: chr(int(found.group(1), 16)), text)
+    if _SURROGATES.search(text):
+        # Halves of a character that were escaped one by one; a half without its other one is none.
+        return text.encode("utf-16-le", "surrogatepass").decode("utf-16-le", "replace")
+    return text

@@ -9,12 +9,13 @@ from xml.parsers import expat
 
 from strutbook_addin.sheets import Written
 from strutbook_addin.xlsx.book_part import BookPart
+from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.markup import (
     MAIN_NAMESPACES,
+    RELATIONSHIP_NAMESPACES,
     as_utf8,
     damaged,
     element_end,
-    forbidden_doctype,
     local_name,
     spliced,
     tag_at,
@@ -109,12 +110,17 @@ class BookChanges:
         free = (f"rId{number}" for number in range(1, 1_000_000) if f"rId{number}" not in used)
         return {sheet: next(free) for sheet in names}
 
+    @property
+    def _relationship_namespace(self) -> str:
+        """Where types of relationships come from: strict workbooks have their own."""
+        namespace = self.book.root.tag.partition("}")[0].lstrip("{")
+        return RELATIONSHIP_NAMESPACES[MAIN_NAMESPACES.index(namespace)]
+
     def _change_relationships(
         self, changed: dict[str, bytes], names: Mapping[str, str], removed: frozenset[str]
     ) -> None:
         part, data, root = self._small_part(relationships_part(self.book.part))
-        # Strict workbooks have types of their own; the sheets that are there show which.
-        kind = next(found.kind for found in self.book.relationships if found.kind.endswith("/worksheet"))
+        kind = f"{self._relationship_namespace}/worksheet"
         prefix = _prefix(root.name)
         new = "".join(
             f'<{prefix}Relationship Id="{identity}" Type="{kind}" Target="/{names[sheet]}"/>'

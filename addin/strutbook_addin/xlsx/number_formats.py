@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
 from datetime import date, datetime, time, timedelta
 from xml.etree import ElementTree as ET
 
@@ -13,22 +14,26 @@ _BUILT_IN = frozenset({*range(14, 23), *range(27, 37), 45, 46, 47, *range(50, 59
 #: Text in quotes, escaped characters, colours and conditions, which hold letters that mean no date.
 _NOT_CODES = re.compile(r'"[^"]*"|\\.|_.|\*.|\[(?!h+\]|m+\]|s+\])[^\]]*\]', re.IGNORECASE)
 _CODES = re.compile(r"[dmyhs]", re.IGNORECASE)
+#: Hours, minutes or seconds that run on past a day or an hour.
+_ELAPSED = re.compile(r"\[(?:h+|m+|s+)\]", re.IGNORECASE)
+_ELAPSED_BUILT_IN = 46
 _MICROSECOND = timedelta(microseconds=1)
 
+#: What a number is shown as, from the number and whether dates are counted from 1904.
+Shown = Callable[[float, bool], "datetime | date | time | timedelta | float"]
 
-def date_styles(root: ET.Element) -> frozenset[int]:
-    """Indices of the cell formats (of a styles part) that show dates or times."""
-    own = {
-        int(element.get("numFmtId", "0")): element.get("formatCode", "")
-        for element in children(root, "numFmts", "numFmt")
-    }
-    shown_as_date = {identity for identity, code in own.items() if is_date_format(code)}
-    dates = (_BUILT_IN - own.keys()) | shown_as_date
-    return frozenset(
-        index
-        for index, element in enumerate(children(root, "cellXfs", "xf"))
-        if int(element.get("numFmtId", "0")) in dates
-    )
+
+def date_styles(root: ET.Element) -> dict[str, Shown]:
+    """Cell formats (of a styles part) that show dates or times, by their index as cells write it."""
+    shown: dict[int, Shown] = {identity: date_of for identity in _BUILT_IN}
+    shown[_ELAPSED_BUILT_IN] = duration_of
+    for element in children(root, "numFmts", "numFmt"):
+        identity, code = int(element.get("numFmtId", "0")), element.get("formatCode", "")
+        shown.pop(identity, None)
+        if is_date_format(code):
+            shown[identity] = duration_of if _ELAPSED.search(code) else date_of
+    formats = (int(element.get("numFmtId", "0")) for element in children(root, "cellXfs", "xf"))
+    return {str(index): shown[identity] for index, identity in enumerate(formats) if identity in shown}
 
 
 def is_date_format(code: str) -> bool:
@@ -39,6 +44,18 @@ def is_date_format(code: str) -> bool:
     """
     first = _NOT_CODES.sub("", code).partition(";")[0]
     return "general" not in first.casefold() and _CODES.search(first) is not None
+
+
+def duration_of(number: float, _: bool = False) -> timedelta | float:
+    """Duration that a number of days stands for.
+
+    >>> duration_of(1.5)
+    datetime.timedelta(days=1, seconds=43200)
+    """
+    try:
+        return timedelta(milliseconds=round(number * 86_400_000))
+    except (OverflowError, ValueError):
+        return number
 
 
 def date_of(number: float, from_1904: bool) -> datetime | date | time | float:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import stat
 import struct
 import zipfile
 import zlib
@@ -10,6 +11,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
 
+from strutbook_addin.xlsx.doctypes import declares_doctype, forbidden_doctype
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 
 MEBIBYTE = 1 << 20
@@ -24,19 +26,18 @@ RATIO_FROM = 64 * MEBIBYTE
 ENTRY_LIMIT = 20_000
 
 _OLE_SIGNATURE = bytes.fromhex("d0cf11e0a1b11ae1")
+_CENTRAL_SIGNATURE = b"PK\1\2"
 _CENTRAL = struct.Struct("<4s4B4HL2L5H2L")
+_LOCAL = struct.Struct("<4s2B4HL2L2H")
 _END = struct.Struct("<4s4H2LH")
 #: In zip archives this size or offset means that the real one stands elsewhere.
 _ELSEWHERE = 0xFFFFFFFF
-_DAMAGED = (
-    zipfile.BadZipFile,
-    zlib.error,
-    EOFError,
-    NotImplementedError,
-    RuntimeError,
-    struct.error,
-    ValueError,
-)
+#: What the standard library raises for archives that are none, or are damaged.
+_DAMAGED = (zipfile.BadZipFile, EOFError, NotImplementedError, RuntimeError, struct.error, ValueError)
+#: Parts in XML; pictures in SVG, which may rightly declare a document type, are never parsed.
+_MARKUP = (".xml", ".rels", ".vml")
+#: Bytes of a part from which its first element is told.
+_HEAD = 4096
 
 
 @dataclass(frozen=True)
@@ -44,6 +45,7 @@ class _Entry:
     info: zipfile.ZipInfo
     central: bytes  #: its record in the central directory, as it was found
     start: int  #: where its local header begins
+    content: int  #: where its compressed bytes begin
     end: int  #: where its data and all that belongs to it end
 
 
@@ -54,8 +56,9 @@ class Package:
         self.data = data
         self._archive = self._open(data)
         self._entries = self._entries_of(self._archive)
-        self._by_folded_name = {entry.info.filename.casefold(): entry for entry in self._entries}
+        self._by_folded_name = {_folded(entry.info.filename): entry for entry in self._entries}
         self._check_limits()
+        self._check_doctypes()
 
     @classmethod
     def open(cls, path: Path) -> Package:
@@ -68,9 +71,11 @@ class Package:
         OSError
             When the file cannot be read at all.
         """
-        if path.is_dir():
-            raise UnreadableWorkbook("it is a folder. Name a workbook, .xlsx or .xlsm.")
-        size = path.stat().st_size
+        state = path.stat()
+        if not stat.S_ISREG(state.st_mode):
+            kind = "a folder" if stat.S_ISDIR(state.st_mode) else "no file but a device"
+            raise UnreadableWorkbook(f"it is {kind}. Name a workbook, .xlsx or .xlsm.")
+        size = state.st_size
         if size > FILE_LIMIT:
             raise UnreadableWorkbook(
                 f"the file holds {size // MEBIBYTE} MiB; at most {FILE_LIMIT // MEBIBYTE} MiB are read. "
@@ -84,7 +89,7 @@ class Package:
 
     def find(self, name: str) -> str | None:
         """Name of a part as it is written in the file; part names match without regard to case."""
-        entry = self._by_folded_name.get(name.casefold())
+        entry = self._by_folded_name.get(_folded(name))
         return None if entry is None else entry.info.filename
 
     def read(self, name: str) -> bytes:
@@ -95,13 +100,15 @@ class Package:
         UnreadableWorkbook
             When it is missing or damaged.
         """
-        found = self.find(name)
-        if found is None:
+        entry = self._by_folded_name.get(_folded(name))
+        if entry is None:
             raise UnreadableWorkbook(f"the file is damaged: its part {name} is missing. {_REPAIR}")
-        try:
-            return self._archive.read(found)
-        except _DAMAGED as error:
-            raise UnreadableWorkbook(f"the file is damaged in its part {found} ({error}). {_REPAIR}") from error
+        info = entry.info
+        # One byte more than the archive declares shows a part that inflates to more than it says.
+        data = self._inflated(entry, info.compress_size, info.file_size + 1)
+        if len(data) != info.file_size or zlib.crc32(data) != info.CRC:
+            raise UnreadableWorkbook(f"the file is damaged in its part {info.filename}. {_REPAIR}")
+        return data
 
     def packed(self, changed: Mapping[str, bytes], removed: frozenset[str] = frozenset()) -> bytes:
         """The file with some parts changed, added or removed; every other byte of its parts is copied.
@@ -130,12 +137,26 @@ class Package:
         out.write(comment)
         return out.getvalue()
 
+    def _inflated(self, entry: _Entry, compressed: int, limit: int) -> bytes:
+        """At most `limit` bytes of a part, from so many of its compressed bytes."""
+        packed = self.data[entry.content : entry.content + compressed]
+        if entry.info.compress_type == zipfile.ZIP_STORED:
+            return packed[:limit]
+        try:
+            return zlib.decompressobj(-15).decompress(packed, limit)
+        except zlib.error as error:
+            name = entry.info.filename
+            raise UnreadableWorkbook(f"the file is damaged in its part {name} ({error}). {_REPAIR}") from error
+
     def _open(self, data: bytes) -> zipfile.ZipFile:
         if data.startswith(_OLE_SIGNATURE):
             raise UnreadableWorkbook(
                 "the file is protected by a password or is an old .xls workbook. "
                 "Open it in your spreadsheet program and save it as .xlsx without a password."
             )
+        # Counted before the directory is read: millions of entries would take minutes and all memory.
+        if data.count(_CENTRAL_SIGNATURE) > ENTRY_LIMIT:
+            raise UnreadableWorkbook(f"the file holds more than {ENTRY_LIMIT:,} parts; no workbook does.")
         try:
             return zipfile.ZipFile(io.BytesIO(data))
         except _DAMAGED as error:
@@ -146,20 +167,24 @@ class Package:
 
     def _entries_of(self, archive: zipfile.ZipFile) -> list[_Entry]:
         infos = archive.infolist()
-        if len(infos) > ENTRY_LIMIT:
-            raise UnreadableWorkbook(f"the file holds {len(infos)} parts; at most {ENTRY_LIMIT} are read.")
         starts = sorted(info.header_offset for info in infos)
         following = dict(zip(starts, [*starts[1:], archive.start_dir], strict=True))
         entries: list[_Entry] = []
         position = archive.start_dir
         for info in infos:
             fields = _CENTRAL.unpack_from(self.data, position)
-            end = position + _CENTRAL.size + sum(fields[12:15])
-            start = info.header_offset
-            entries.append(_Entry(info, self.data[position:end], start, following[start]))
-            position = end
-        folded = [info.filename.casefold() for info in infos]
-        if len(set(folded)) < len(folded) or len(set(starts)) < len(starts):
+            central_end = position + _CENTRAL.size + sum(fields[12:15])
+            start, end = info.header_offset, following[info.header_offset]
+            content = start + _LOCAL.size
+            if content <= end:
+                content += sum(_LOCAL.unpack_from(self.data, start)[10:12])
+            # Parts that overlap make a small file inflate without end, and could not be copied one by one.
+            if content + info.compress_size > end:
+                raise UnreadableWorkbook(f"the file is damaged near its part {info.filename}. {_REPAIR}")
+            entries.append(_Entry(info, self.data[position:central_end], start, content, end))
+            position = central_end
+        folded = {_folded(info.filename) for info in infos}
+        if len(folded) < len(infos) or len(following) < len(infos):
             raise UnreadableWorkbook(
                 f"the file holds two parts of one name, and programs would differ in it. {_REPAIR}"
             )
@@ -180,14 +205,35 @@ class Package:
                 raise UnreadableWorkbook(
                     "the file is protected by a password. Save it without one in your spreadsheet program."
                 )
+            if info.compress_type not in (zipfile.ZIP_STORED, zipfile.ZIP_DEFLATED):
+                raise UnreadableWorkbook(
+                    f"its part {info.filename} is compressed in a way that no spreadsheet program uses. "
+                    "Save it as .xlsx in your spreadsheet program."
+                )
         if total > TOTAL_LIMIT:
             raise UnreadableWorkbook(
                 f"the file is not opened: its parts would inflate to {total // MEBIBYTE} MiB; "
                 f"at most {TOTAL_LIMIT // MEBIBYTE} MiB are read."
             )
 
+    def _check_doctypes(self) -> None:
+        for entry in self._entries:
+            name = entry.info.filename
+            if name.casefold().endswith(_MARKUP):
+                head = self._inflated(entry, min(entry.info.compress_size, _HEAD), _HEAD)
+                declared = declares_doctype(head)
+                if declared is None:
+                    declared = declares_doctype(self.read(name))
+                if declared:
+                    raise forbidden_doctype(name)
+
 
 _REPAIR = "Open it in your spreadsheet program, let it repair the file, and save it again."
+
+
+def _folded(name: str) -> str:
+    """Name of a part without regard to case and to how its folders are written."""
+    return name.replace("\\", "/").lstrip("/").casefold()
 
 
 def _moved(entry: _Entry, offset: int) -> bytes:

@@ -144,7 +144,11 @@ def _dimension_grown(sheet: SheetPart, by_row: Mapping[int, Mapping[int, Written
     if sheet.dimension is None or not by_row:
         return
     start, reference = sheet.dimension
-    area = area_of(reference)
+    try:
+        area = area_of(reference)
+    except ValueError:
+        # It is only a hint to readers, so what was wrong before stays as it was.
+        return
     columns = [column for values in by_row.values() for column in (min(values), max(values))]
     first = cell_name(min(area.first_row, *by_row), min(area.first_column, *columns))
     last = cell_name(max(area.last_row, *by_row), max(area.last_column, *columns))

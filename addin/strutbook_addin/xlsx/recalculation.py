@@ -33,13 +33,15 @@ class Recalculated:
         return scan(self.book.package.read(part), part).cells
 
 
-def recalculated(package: Package, data: bytes) -> Recalculated:
-    """Calculate every formula of a workbook file; the file itself stays as it is."""
+def recalculated(package: Package) -> Recalculated:
+    """Calculate every formula of a workbook; the workbook itself stays as it is."""
     from formualizer import recalculate_xlsx_bytes
 
-    content_types = package.read("[Content_Types].xml")
+    data = package.data
+    name = package.find("[Content_Types].xml") or ""
+    content_types = package.read(name)
     if _MACRO_CONTENT in content_types:
-        name = package.find("[Content_Types].xml") or ""
+        # The library opens workbooks without macros only.
         data = package.packed({name: content_types.replace(_MACRO_CONTENT, _PLAIN_CONTENT)})
     try:
         result = recalculate_xlsx_bytes(data)["bytes"]
@@ -81,7 +83,7 @@ def refreshed_values(
         new, old = after.get(place), before.get(place)
         if new is None or old is None or (new.kind == "e" and not same_value(new, cell)):
             changed[place] = None
-        elif not same_value(new, old):
+        elif (new.kind, new.value) != (old.kind, old.value):
             changed[place] = _stored(new) if same_value(old, cell) else None
     return changed
 

@@ -19,11 +19,13 @@ def check_target(target: Path) -> None:
     UnwritableWorkbook
         When it is read-only, or open in a spreadsheet program.
     """
-    target = target.resolve()
+    named, target = target, target.resolve()
     if target.is_dir():
         raise UnwritableWorkbook("it is a folder. Name a file.")
-    for lock in (target.with_name(f"~${target.name}"), target.with_name(f".~lock.{target.name}#")):
-        if lock.exists():
+    # A program puts its lock beside the name that it was given, which may be a link.
+    for path in {named, target}:
+        lock = next((lock for lock in _locks(path) if lock.exists()), None)
+        if lock is not None:
             raise UnwritableWorkbook(
                 f"it is open in a spreadsheet program ({lock.name} stands beside it). "
                 "Close it there and solve again; if no program has it open, delete that file."
@@ -38,13 +40,18 @@ def check_target(target: Path) -> None:
         raise UnwritableWorkbook(f"the folder {folder} is read-only. Name another place with --out.")
 
 
+def _locks(path: Path) -> tuple[Path, Path]:
+    """Files that Excel and LibreOffice put beside a workbook while it is open in them."""
+    return path.with_name(f"~${path.name}"), path.with_name(f".~lock.{path.name}#")
+
+
 def replace_file(target: Path, data: bytes) -> None:
     """Write a file so that at any moment either the old or the whole new one stands there.
 
     A symbolic link stays and its file is replaced; the mode of an existing file is kept.
     """
     target = target.resolve()
-    handle, name = tempfile.mkstemp(prefix=f".{target.stem}-", suffix=".part", dir=target.parent)
+    handle, name = tempfile.mkstemp(prefix=f".{target.stem[:40]}-", suffix=".part", dir=target.parent)
     try:
         with os.fdopen(handle, "wb") as file:
             file.write(data)

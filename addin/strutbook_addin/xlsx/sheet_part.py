@@ -10,8 +10,9 @@ from dataclasses import dataclass, field
 from functools import cache
 from xml.parsers import expat
 
+from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
-from strutbook_addin.xlsx.markup import MAIN_NAMESPACES, as_utf8, damaged, forbidden_doctype
+from strutbook_addin.xlsx.markup import MAIN_NAMESPACES, as_utf8, damaged
 
 ROWS, COLUMNS = 1 << 20, 1 << 14
 #: Most cells under merged areas, array formulas and tables' headers that are looked at in a sheet.
@@ -46,7 +47,10 @@ class Cell:
     @property
     def awaits_value(self) -> bool:
         """Whether it is a formula of which no value is stored."""
-        return self.formula is not None and not self.value and self.kind not in ("str", "inlineStr")
+        # An empty text is a value, and is stored as an empty element.
+        return self.formula is not None and (
+            self.value is None or (not self.value and self.kind not in ("str", "inlineStr"))
+        )
 
 
 @dataclass
@@ -88,7 +92,7 @@ class SheetPart:
     column_styles: list[tuple[int, int, int]] = field(default_factory=list)  #: first and last column, format
     merged: list[Area] = field(default_factory=list)
     arrays: list[Area] = field(default_factory=list)  #: array formulas and data tables
-    shared_areas: dict[str, tuple[int, int]] = field(default_factory=dict)  #: cell that holds each shared formula
+    shared_masters: dict[tuple[int, int], str] = field(default_factory=dict)  #: their index, by their cell
     shared_users: set[str] = field(default_factory=set)  #: shared formulas on which further cells depend
     table_relationships: list[str] = field(default_factory=list)
 
@@ -105,6 +109,8 @@ def column_number(letters: str) -> int:
     >>> column_number("A"), column_number("AB")
     (0, 27)
     """
+    if len(letters) > 3:
+        raise ValueError(f"there is no column {letters[:9]}")
     number = 0
     for letter in letters.upper():
         number = number * 26 + ord(letter) - 64
@@ -260,7 +266,7 @@ class _Scanner:
         if kind in ("array", "dataTable") and "ref" in attributes:
             self._sheet.arrays.append(area_of(attributes["ref"]))
         elif kind == "shared" and "ref" in attributes:
-            self._sheet.shared_areas[shared] = place
+            self._sheet.shared_masters[place] = shared
         elif kind == "shared":
             self._sheet.shared_users.add(shared)
 
