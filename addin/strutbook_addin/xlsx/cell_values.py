@@ -9,7 +9,6 @@ from html import escape
 from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart
 from strutbook_addin.xlsx.markup import plain_text, text_markup
-from strutbook_addin.xlsx.number_formats import date_of
 from strutbook_addin.xlsx.sheet_part import Cell
 
 #: Attributes that a cell keeps when its value changes: its format, and whether its phonetic reading shows.

@@ -169,7 +169,7 @@ def spliced(data: bytes, changes: Iterable[tuple[int, int, bytes]]) -> bytes:
 def text_markup(text: str) -> str:
     r"""Text of a cell as markup; characters that XML cannot hold are escaped as the format has it.
 
-    >>> text_markup("a < b"), text_markup("bell \\x07"), text_markup("_x0041_")
+    >>> text_markup("a < b"), text_markup("bell \x07"), text_markup("_x0041_")
     ('a &lt; b', 'bell _x0007_', '_x005F_x0041_')
     """
     return escape(_TO_ESCAPE.sub(lambda found: f"_x{ord(found.group()):04X}_", text), quote=False)
@@ -178,8 +178,8 @@ def text_markup(text: str) -> str:
 def plain_text(text: str) -> str:
     r"""Text of a cell as the user sees it.
 
-    >>> plain_text("two_x000D_\\nlines"), plain_text("_x005F_x0041_")
-    ('two\\r\\nlines', '_x0041_')
+    >>> plain_text("two_x000D_lines"), plain_text("_x005F_x0041_")
+    ('two\rlines', '_x0041_')
     """
     if "_x" not in text:
         return text

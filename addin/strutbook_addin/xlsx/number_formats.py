@@ -25,7 +25,7 @@ Shown = Callable[[float, bool], "datetime | date | time | timedelta | float"]
 
 def date_styles(root: ET.Element) -> dict[str, Shown]:
     """Cell formats (of a styles part) that show dates or times, by their index as cells write it."""
-    shown: dict[int, Shown] = {identity: date_of for identity in _BUILT_IN}
+    shown: dict[int, Shown] = dict.fromkeys(_BUILT_IN, date_of)
     shown[_ELAPSED_BUILT_IN] = duration_of
     for element in children(root, "numFmts", "numFmt"):
         identity, code = int(element.get("numFmtId", "0")), element.get("formatCode", "")
