@@ -5,16 +5,16 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Mapping, Sequence
+from operator import itemgetter
 from pathlib import Path
 
 from strutbook_addin.findings import Finding
 from strutbook_addin.sheets import CellValue, Formula, Grid, Refusal, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart, read_book_part
-from strutbook_addin.xlsx.cell_values import value_of
+from strutbook_addin.xlsx.cell_values import stored_values
 from strutbook_addin.xlsx.dependence import following_sheets
 from strutbook_addin.xlsx.errors import UnreadableWorkbook, UnwritableWorkbook
 from strutbook_addin.xlsx.formula_values import formula_values
-from strutbook_addin.xlsx.markup import damaged
 from strutbook_addin.xlsx.new_parts import BookChanges
 from strutbook_addin.xlsx.objections import Objections
 from strutbook_addin.xlsx.package import Package
@@ -38,6 +38,7 @@ class OfflineWorkbook:
         self._book = book
         self._stamp = stamp
         self._parts: dict[str, SheetPart] = {}
+        self._values: dict[str, dict[_Place, CellValue]] = {}
         self._objections: dict[str, Objections] = {}
         self._edits: dict[str, dict[_Place, Written]] = {}
         self._findings: list[Finding] = []
@@ -64,11 +65,11 @@ class OfflineWorkbook:
 
     def read(self, sheet: str) -> Grid:
         """Values from A1 to the last used cell, as rows; rows may differ in length."""
-        values: dict[_Place, CellValue] = {}
-        if sheet in self._book.sheets:
-            values = self._stored(sheet)
-        for place, written in self._edits.get(sheet, {}).items():
-            values[place] = written.value if isinstance(written, Formula) else written
+        values = self._stored(sheet) if sheet in self._book.sheets else {}
+        edits = self._edits.get(sheet)
+        if edits:
+            written = {place: value.value if isinstance(value, Formula) else value for place, value in edits.items()}
+            values = dict(sorted((values | written).items(), key=itemgetter(0)))
         return _grid(values, sheet)
 
     def write(self, sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]) -> list[Refusal]:
@@ -80,12 +81,13 @@ class OfflineWorkbook:
             for place, value in _places(row, column, values):
                 edits[place] = value
             return []
-        cells, objections = self._part(sheet).cells, self._objections_on(sheet)
+        cells, stored = self._part(sheet).cells, self._stored(sheet)
+        objections = self._objections_on(sheet)
         edits = self._edits.setdefault(sheet, {})
         refusals: list[Refusal] = []
         for place, value in _places(row, column, values):
             cell = cells.get(place)
-            if self._holds(cell, value):
+            if _holds(cell, stored.get(place), value):
                 edits.pop(place, None)
                 continue
             objection = objections.to_clearing if value is None else objections.to_writing
@@ -131,39 +133,21 @@ class OfflineWorkbook:
         return self._parts[sheet]
 
     def _stored(self, sheet: str) -> dict[_Place, CellValue]:
-        """Values of the cells of a sheet, formulas without a trusted value calculated."""
-        part = self._part(sheet)
-        book = self._book
-        values: dict[_Place, CellValue] = {}
-        place = (0, 0)
-        try:
-            for place, cell in part.cells.items():
-                value = value_of(cell, book)
-                if value is not None:
-                    values[place] = value
-        except (ValueError, IndexError) as error:
-            raise damaged(f"{part.name}, cell {cell_name(*place)},", error) from error
-        if part.has_formulas:
-            found = formula_values(sheet, part, book, self._recalculated_original)
-            values.update(found.values)
-            self._findings.extend(found.findings(sheet))
-        return values
+        """Values in a sheet as it was opened, row by row; formulas without a trusted value are calculated."""
+        if sheet not in self._values:
+            part = self._part(sheet)
+            values = self._values[sheet] = stored_values(part, self._book)
+            if part.has_formulas:
+                found = formula_values(sheet, part, self._book, self._recalculated_original)
+                if found.values:
+                    self._values[sheet] = dict(sorted((values | found.values).items(), key=itemgetter(0)))
+                self._findings.extend(found.findings(sheet))
+        return self._values[sheet]
 
     def _recalculated_original(self) -> Recalculated:
         if self._original is None:
             self._original = recalculated(self._package)
         return self._original
-
-    def _holds(self, cell: Cell | None, value: Written) -> bool:
-        """Whether a cell stores a value already."""
-        if cell is None:
-            return value is None
-        if cell.formula is not None:
-            return isinstance(value, Formula) and (cell.formula, cell.value) == (value.text[1:], value.value)
-        stored = None if cell.value is None else value_of(cell, self._book)
-        if isinstance(value, (int, float)) and isinstance(stored, (int, float)):
-            return not isinstance(stored, bool) and stored == value
-        return type(stored) is type(value) and stored == value
 
     def _objections_on(self, sheet: str) -> Objections:
         if sheet not in self._objections:
@@ -235,6 +219,17 @@ def _stamp(path: Path) -> tuple[int, int]:
     return state.st_mtime_ns, state.st_size
 
 
+def _holds(cell: Cell | None, stored: CellValue, value: Written) -> bool:
+    """Whether a cell holds already what is to be written."""
+    if cell is None:
+        return value is None
+    if cell.formula is not None:
+        return isinstance(value, Formula) and (cell.formula, cell.value) == (value.text[1:], value.value)
+    if isinstance(value, (int, float)) and isinstance(stored, (int, float)):
+        return not isinstance(stored, bool) and stored == value
+    return type(stored) is type(value) and stored == value
+
+
 def _places(row: int, column: int, values: Sequence[Sequence[Written]]) -> list[tuple[_Place, Written]]:
     return [
         (
@@ -246,22 +241,24 @@ def _places(row: int, column: int, values: Sequence[Sequence[Written]]) -> list[
     ]
 
 
-def _grid(values: dict[_Place, CellValue], sheet: str) -> Grid:
+def _grid(values: Mapping[_Place, CellValue], sheet: str) -> Grid:
+    """Rows of values that come row by row."""
     grid: Grid = []
+    line: list[CellValue] = []
     size = 0
-    for row, column in sorted(values):
-        value = values[row, column]
+    for (row, column), value in values.items():
         if value is None:
             continue
         if row >= len(grid):
             grid.extend([] for _ in range(row + 1 - len(grid)))
-        line = grid[row]
+            line = grid[row]
         size += column + 1 - len(line)
         if size + row > GRID_LIMIT:
             raise UnreadableWorkbook(
                 f"the sheet {sheet} reaches to {cell_name(row, column)}, too far to be read. "
                 "Delete what stands far outside of the tables."
             )
-        line.extend([None] * (column - len(line)))
+        if column > len(line):
+            line.extend([None] * (column - len(line)))
         line.append(value)
     return grid

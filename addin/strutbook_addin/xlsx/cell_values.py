@@ -8,13 +8,34 @@ from html import escape
 
 from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart
-from strutbook_addin.xlsx.markup import plain_text, text_markup
-from strutbook_addin.xlsx.sheet_part import Cell
+from strutbook_addin.xlsx.markup import damaged, plain_text, text_markup
+from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
 
 #: Attributes that a cell keeps when its value changes: its format, and whether its phonetic reading shows.
 _KEPT = ("s", "ph")
 #: Longest text of a cell; a spreadsheet program would call a workbook with a longer one damaged.
 TEXT_LIMIT = 32_767
+
+
+def stored_values(part: SheetPart, book: BookPart) -> dict[tuple[int, int], CellValue]:
+    """Values of the cells of a sheet that hold any, in their order.
+
+    Raises
+    ------
+    UnreadableWorkbook
+        When a cell stores what is not of its type.
+    """
+    values: dict[tuple[int, int], CellValue] = {}
+    place = (0, 0)
+    try:
+        for place, cell in part.cells.items():
+            if cell.value is not None:
+                value = value_of(cell, book)
+                if value is not None:
+                    values[place] = value
+    except (ValueError, IndexError) as error:
+        raise damaged(f"{part.name}, cell {cell_name(*place)},", error) from error
+    return values
 
 
 def value_of(cell: Cell, book: BookPart) -> CellValue:
