@@ -6,7 +6,15 @@ The main job is :func:`analyse`; see its example. The theory stands on one matri
 from strutbook.actions import Actions
 from strutbook.analysis import Analysis, analyse
 from strutbook.equilibrium import Equilibrium, equilibrium
-from strutbook.errors import InvalidTruss, NotBalanced, StiffnessNeeded, StrutbookError, Unstable
+from strutbook.errors import (
+    InvalidTruss,
+    NotBalanced,
+    NotSettled,
+    SlackMechanism,
+    StiffnessNeeded,
+    StrutbookError,
+    Unstable,
+)
 from strutbook.mechanism_words import describe_mechanism
 from strutbook.mechanisms import Mechanism
 from strutbook.member_loads import (
@@ -16,6 +24,7 @@ from strutbook.member_loads import (
     self_weight,
     thermal_elongation,
 )
+from strutbook.one_sided import OneSided, Takes, analyse_one_sided
 from strutbook.stability import Stability, stability
 from strutbook.supports import Supports
 from strutbook.truss import Truss
@@ -28,13 +37,18 @@ __all__ = [
     "InvalidTruss",
     "Mechanism",
     "NotBalanced",
+    "NotSettled",
+    "OneSided",
+    "SlackMechanism",
     "Stability",
     "StiffnessNeeded",
     "StrutbookError",
     "Supports",
+    "Takes",
     "Truss",
     "Unstable",
     "analyse",
+    "analyse_one_sided",
     "describe_mechanism",
     "equilibrium",
     "line_load",

@@ -5,6 +5,8 @@
     StrutbookError
     ├── InvalidTruss       the arrays do not describe a truss, or actions on it
     ├── Unstable           the truss can move; carries the mechanisms
+    ├── SlackMechanism     the truss can move once members have gone slack
+    ├── NotSettled         no state of slack members was found that is consistent
     ├── StiffnessNeeded    forces depend on stiffness, and none is given
     └── NotBalanced        rounding leaves joints out of balance; carries the residual
 
@@ -16,6 +18,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
+    from strutbook.arrays import IntArray
     from strutbook.stability import Stability
 
 
@@ -46,6 +49,47 @@ class Unstable(StrutbookError):
             "that stops each of the mechanisms."
         )
         self.stability = stability
+
+
+class SlackMechanism(StrutbookError):
+    """The truss can move once the members that would be loaded the wrong way have gone slack.
+
+    Attributes
+    ----------
+    stability : Stability
+        Rank and mechanisms of what is left; members are counted without the slack ones.
+    combination : int
+        Index of the combination.
+    slack : (slack members,) array of int
+        Indices of the members that are slack.
+    """
+
+    def __init__(self, stability: Stability, combination: int, slack: IntArray) -> None:
+        listed = ", ".join(str(member) for member in slack[:6].tolist())
+        super().__init__(
+            f"In combination {combination} (counted from 0) members such as {listed} go slack, and then the truss "
+            "can move."
+        )
+        self.stability = stability
+        self.combination = combination
+        self.slack = slack
+
+
+class NotSettled(StrutbookError):
+    """No state was found in which slack and acting members agree with their forces.
+
+    Attributes
+    ----------
+    combination : int
+        Index of the combination.
+    """
+
+    def __init__(self, combination: int) -> None:
+        super().__init__(
+            f"In combination {combination} (counted from 0) members keep going slack and tight in turn; no consistent "
+            "state was found. Look at misfits and at members that take one kind of force only."
+        )
+        self.combination = combination
 
 
 class StiffnessNeeded(StrutbookError):

@@ -49,10 +49,9 @@ def columns_of(table: Table, dimension: int) -> tuple[Column, ...]:
 def is_about_z(column: Column) -> bool:
     """True for a column that only a space truss needs (`z`, `Fz`, `Displacement z`).
 
-        >>> from strutbook_addin.run import CAUTION, NOT_CHECKED
-    from strutbook_addin.tables.schema import LOADS, SUPPORTS
-        >>> is_about_z(LOADS.column("Fz")), is_about_z(SUPPORTS.column("Stiffness"))
-        (True, False)
+    >>> from strutbook_addin.tables.schema import LOADS, SUPPORTS
+    >>> is_about_z(LOADS.column("Fz")), is_about_z(SUPPORTS.column("Stiffness"))
+    (True, False)
     """
     return any(len(word) <= 2 and word.endswith("z") for word in column.name.split())
 
