@@ -114,11 +114,18 @@ class OfflineWorkbook:
         Raises
         ------
         UnwritableWorkbook
-            When the workbook is signed, the target is read-only or open, or the file was changed meanwhile.
+            When the workbook is signed, the target is of another kind, read-only or open,
+            or the file was changed meanwhile.
         """
         if any(name.casefold().startswith("_xmlsignatures/") for name in self._package.names()):
             raise UnwritableWorkbook(
                 "it carries a digital signature, which any change would break. Remove the signature, or solve a copy."
+            )
+        kind, named = self._path.suffix, target.suffix
+        if kind.casefold() != named.casefold():
+            raise UnwritableWorkbook(
+                f"results of a {kind} workbook cannot be written as {named or 'a file of no kind'}: "
+                f"a spreadsheet program would not open it. Name a {kind} file."
             )
         check_target(target)
         data = self._packed()

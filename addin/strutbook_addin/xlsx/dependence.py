@@ -32,7 +32,7 @@ def following_sheets(
     """
     folded = {sheet: [text.casefold() for text in texts] for sheet, texts in formulas.items()}
     named = {name.casefold(): text.casefold() for name, text in names.items()}
-    reached = {_as_written(sheet) for sheet in written}
+    reached = {end for sheet in written for end in _as_written(sheet)}
     following = {sheet for sheet in folded if sheet in written}
     while True:
         reached_names = {name for name, text in named.items() if name not in reached and _mentions(text, reached)}
@@ -43,13 +43,14 @@ def following_sheets(
         }
         if not reached_names and not found:
             return following
-        reached |= reached_names | {_as_written(sheet) for sheet in found}
+        reached |= reached_names | {end for sheet in found for end in _as_written(sheet)}
         following |= found
 
 
-def _as_written(sheet: str) -> str:
-    """Name of a sheet as it stands in a formula, where an apostrophe is doubled."""
-    return sheet.casefold().replace("'", "''")
+def _as_written(sheet: str) -> tuple[str, str]:
+    """Name of a sheet as it stands in references, plain and in apostrophes, which are doubled inside."""
+    name = sheet.casefold()
+    return f"{name}!", name.replace("'", "''") + "'!"
 
 
 def _mentions(formula: str, names: Iterable[str]) -> bool:

@@ -62,6 +62,9 @@ class HandWritten:
     def relate(self, identity: str, kind: str, target: str, content: str | bytes) -> HandWritten:
         """Add a part to which the workbook has a relationship."""
         self.parts[f"xl/{target}"] = content
+        declared = f"{SPREADSHEET}.{kind}+xml" if target.endswith("xml") else f"application/{kind}"
+        override = f'<Override PartName="/xl/{target}" ContentType="{declared}"/></Types>'
+        self.replace("[Content_Types].xml", "</Types>", override)
         new = f'<Relationship Id="{identity}" Type="{RELATIONS}/{kind}" Target="{target}"/></Relationships>'
         return self.replace("xl/_rels/workbook.xml.rels", "</Relationships>", new)
 

@@ -110,9 +110,6 @@ def test_formula_of_our_own_on_which_others_depend_stays(book) -> None:
 
 def test_chain_of_calculation_goes_only_with_a_formula(book) -> None:
     book.relate("rId5", "calcChain", "calcChain.xml", f'<calcChain xmlns="{MAIN}"><c r="A1" i="1"/></calcChain>')
-    book.replace(
-        "[Content_Types].xml", "</Types>", '<Override PartName="/xl/calcChain.xml" ContentType="x/y"/></Types>'
-    )
     book.rows(f'<row r="1"><c r="A1" t="str"><f>{LINK_MARKUP}</f><v>S!A1</v></c></row>')
     book.write((0, 1, [[1.0]]), (0, 0, [[Formula("=" + LINK.replace("A1", "A2"), "S!A2")]]))
     assert "xl/calcChain.xml" in book.reopened()._package.names()
