@@ -98,8 +98,7 @@ def edited(path: Path, changes: Cells) -> None:
 def unescaped(cells: Cells) -> Cells:
     """What openpyxl reads, with the escapes of the format that it leaves in texts resolved."""
     return {
-        place: re.sub(r"_x005F_", "_", value) if isinstance(value, str) else value
-        for place, value in cells.items()
+        place: re.sub(r"_x005F_", "_", value) if isinstance(value, str) else value for place, value in cells.items()
     }
 
 
