@@ -144,7 +144,7 @@ class OfflineWorkbook:
         if sheet not in self._values:
             part = self._part(sheet)
             values = self._values[sheet] = stored_values(part, self._book)
-            if part.has_formulas:
+            if part.formulas:
                 found = formula_values(sheet, part, self._book, self._recalculated_original)
                 if found.values:
                     self._values[sheet] = dict(sorted((values | found.values).items(), key=itemgetter(0)))

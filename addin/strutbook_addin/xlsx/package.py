@@ -37,7 +37,7 @@ _DAMAGED = (zipfile.BadZipFile, EOFError, NotImplementedError, RuntimeError, str
 #: Parts in XML; pictures in SVG, which may rightly declare a document type, are never parsed.
 _MARKUP = (".xml", ".rels", ".vml")
 #: Bytes of a part from which its first element is told.
-_HEAD = 4096
+_HEAD = 512
 
 
 @dataclass(frozen=True)

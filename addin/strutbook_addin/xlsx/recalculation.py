@@ -56,8 +56,9 @@ def recalculated(package: Package) -> Recalculated:
 
 def user_formulas(sheet: SheetPart) -> Iterator[tuple[tuple[int, int], Cell]]:
     """Formula cells of a sheet that are not of our making."""
-    for place, cell in sheet.cells.items():
-        if cell.formula is not None and not is_ours(cell.formula):
+    for place in sheet.formulas:
+        cell = sheet.cells[place]
+        if not is_ours(cell.formula or ""):
             yield place, cell
 
 

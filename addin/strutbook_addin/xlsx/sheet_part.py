@@ -10,6 +10,7 @@ from dataclasses import dataclass, field
 from functools import cache
 from xml.parsers import expat
 
+from strutbook_addin.sheets import column_letters
 from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 from strutbook_addin.xlsx.markup import MAIN_NAMESPACES, as_utf8, damaged
@@ -24,25 +25,22 @@ _REFERENCE = re.compile(r"\$?([A-Za-z]{1,3})\$?([0-9]{1,7})")
 class Cell:
     """One cell element: where it stands in the part, and what it holds as text."""
 
-    __slots__ = ("attributes", "close", "formula", "start", "stored", "value")
+    #: Value as it is stored, None where there is none.
+    value: str | None = None
+    #: Formula without ``=``; empty where it is shared with another cell, None where there is none.
+    formula: str | None = None
+    #: Of a formula, bytes where the tag and the end tag of its stored value begin.
+    stored: tuple[int, int] = (-1, -1)
 
     def __init__(self, start: int, attributes: dict[str, str]) -> None:
         self.start = start  #: byte where its tag begins
         self.close = start  #: byte where its end tag begins; for an empty element, the byte after it
         self.attributes = attributes
-        self.value: str | None = None  #: its value as it is stored, None where there is none
-        self.formula: str | None = None  #: without ``=``; empty where it is shared with another cell
-        self.stored = (-1, -1)  #: of a formula, bytes where the tag and the end tag of its stored value begin
 
     @property
     def kind(self) -> str:
         """Type of the value: `n`, `s`, `str`, `inlineStr`, `b`, `e` or `d`."""
         return self.attributes.get("t", "n")
-
-    @property
-    def style(self) -> int:
-        """Index of the cell's format."""
-        return int(self.attributes.get("s", "0"))
 
     @property
     def awaits_value(self) -> bool:
@@ -90,16 +88,12 @@ class SheetPart:
     close: int = -1  #: byte where its end tag begins; for an empty element, the byte after it
     dimension: tuple[int, str] | None = None  #: byte and reference of the dimension
     column_styles: list[tuple[int, int, int]] = field(default_factory=list)  #: first and last column, format
+    formulas: list[tuple[int, int]] = field(default_factory=list)  #: cells that hold one
     merged: list[Area] = field(default_factory=list)
     arrays: list[Area] = field(default_factory=list)  #: array formulas and data tables
     shared_masters: dict[tuple[int, int], str] = field(default_factory=dict)  #: their index, by their cell
     shared_users: set[str] = field(default_factory=set)  #: shared formulas on which further cells depend
     table_relationships: list[str] = field(default_factory=list)
-
-    @property
-    def has_formulas(self) -> bool:
-        """Whether any cell holds a formula."""
-        return any(cell.formula is not None for cell in self.cells.values())
 
 
 @cache
@@ -193,73 +187,83 @@ class _Scanner:
             prefix + "tablePart": self._table,
         }
         row, row_text, column = -1, "", -1
-        in_data = phonetic = False
+        phonetic = False
         cell: Cell | None = None
         texts: list[str] = []
 
+        def start_outside(name: str, attributes: dict[str, str]) -> None:
+            if name in others:
+                others[name](attributes)
+            elif name == data_tag and sheet.start < 0:
+                sheet.start = parser.CurrentByteIndex
+                parser.StartElementHandler = start
+                parser.EndElementHandler = end
+                parser.CharacterDataHandler = texts.append
+
         def start(name: str, attributes: dict[str, str]) -> None:
-            nonlocal row, row_text, column, cell, in_data, phonetic
-            if name == c_tag and in_data:
+            nonlocal row, row_text, column, cell, phonetic
+            if name == c_tag:
+                column += 1
                 reference = attributes.get("r")
-                if reference is None:
-                    column += 1
-                else:
-                    letters = reference.rstrip("0123456789")
-                    previous, column = column, column_number(letters)
-                    if column <= previous or reference[len(letters) :] != row_text:
-                        raise ValueError(f"the cell {reference} is out of order")
-                    if column >= COLUMNS:
-                        raise ValueError(f"the cell {reference} lies outside of any sheet")
+                # Nearly every cell stands right beside the one before it.
+                if reference is not None and reference != column_letters(column) + row_text:
+                    column = self._column_after(column, reference, row_text)
                 cell = cells[row, column] = Cell(parser.CurrentByteIndex, attributes)
             elif cell is not None:
-                if name == v_tag or (name == t_tag and not phonetic):
-                    parser.CharacterDataHandler = texts.append
+                texts.clear()
+                if name == v_tag:
                     if cell.formula is not None:
                         cell.stored = (parser.CurrentByteIndex, -1)
                 elif name == f_tag:
                     self._formula(attributes, (row, column))
-                    parser.CharacterDataHandler = texts.append
                 elif name == phonetic_tag:
                     phonetic = True
-            elif name == row_tag and in_data:
+            elif name == row_tag:
                 row_text = attributes.get("r", str(row + 2))
                 number = int(row_text) - 1
                 if not row < number < ROWS:
                     raise ValueError(f"the row {row_text} is out of order")
                 row, column = number, -1
                 sheet.rows[row] = Row(parser.CurrentByteIndex, attributes)
-            elif name == data_tag:
-                in_data = True
-                sheet.start = parser.CurrentByteIndex
-            elif name in others:
-                others[name](attributes)
 
         def end(name: str) -> None:
-            nonlocal cell, in_data, phonetic
+            nonlocal cell, phonetic
             if cell is not None:
                 if name == c_tag:
                     cell.close = parser.CurrentByteIndex
                     cell = None
                 elif name == v_tag or (name == t_tag and not phonetic):
-                    parser.CharacterDataHandler = None
-                    cell.value = (cell.value or "") + "".join(texts)
-                    texts.clear()
+                    text = "".join(texts)
+                    cell.value = text if cell.value is None else cell.value + text
                     if cell.formula is not None:
                         cell.stored = (cell.stored[0], parser.CurrentByteIndex)
                 elif name == f_tag:
-                    parser.CharacterDataHandler = None
                     cell.formula = "".join(texts)
-                    texts.clear()
+                    sheet.formulas.append((row, column))
                 elif name == phonetic_tag:
                     phonetic = False
-            elif name == row_tag and in_data:
+            elif name == row_tag:
+                if column >= COLUMNS:
+                    raise ValueError(f"the row {row_text} goes on past the last column of any sheet")
                 sheet.rows[row].close = parser.CurrentByteIndex
             elif name == data_tag:
-                in_data = False
                 sheet.close = parser.CurrentByteIndex
+                parser.StartElementHandler = start_outside
+                parser.EndElementHandler = None
+                parser.CharacterDataHandler = None
 
-        parser.StartElementHandler = start
-        parser.EndElementHandler = end
+        parser.StartElementHandler = start_outside
+
+    @staticmethod
+    def _column_after(least: int, reference: str, row_text: str) -> int:
+        """Column of a cell that leaves some out; it must stand in the row around it."""
+        letters = reference.rstrip("0123456789")
+        column = column_number(letters)
+        if column < least or reference[len(letters) :] != row_text:
+            raise ValueError(f"the cell {reference} is out of order")
+        if column >= COLUMNS:
+            raise ValueError(f"the cell {reference} lies outside of any sheet")
+        return column
 
     def _formula(self, attributes: dict[str, str], place: tuple[int, int]) -> None:
         kind, shared = attributes.get("t", "normal"), attributes.get("si", "")

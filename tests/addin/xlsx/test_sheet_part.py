@@ -30,6 +30,8 @@ def refusal(book) -> str:
         ('<row r="1"><c r="A1"/><c r="A1"/></row>', "the cell A1 is out of order"),
         ('<row r="1"><c r="A2"/></row>', "the cell A2 is out of order"),
         ('<row r="1"><c r="XFE1"/></row>', "the cell XFE1 lies outside of any sheet"),
+        ('<row r="1"><c r="XFD1"/><c r="XFE1"/></row>', "goes on past the last column"),
+        ('<row r="1"><c r="XFD1"/><c/></row>', "goes on past the last column"),
         (f'<row r="1"><c r="{"A" * 100_000}1"/></row>', "there is no column AAAAAAAAA"),
         ('<row r="1"><c r="11"/></row>', "the cell 11 is out of order"),
         ('<row r="1"><c r="$A$1"/></row>', "out of order"),
