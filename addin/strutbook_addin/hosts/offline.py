@@ -21,7 +21,8 @@ from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.patching import patched, stored_values_changed
 from strutbook_addin.xlsx.recalculation import Recalculated, recalculated, refreshed_values, user_formulas
 from strutbook_addin.xlsx.saving import check_target, replace_file
-from strutbook_addin.xlsx.sheet_part import Cell, SheetPart, scan
+from strutbook_addin.xlsx.scanning import scan
+from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
 
 #: Most cells, empty ones between them included, that a sheet is read into.
 GRID_LIMIT = 5_000_000

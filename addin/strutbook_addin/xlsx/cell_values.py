@@ -11,8 +11,6 @@ from strutbook_addin.xlsx.book_part import BookPart
 from strutbook_addin.xlsx.markup import damaged, plain_text, text_markup
 from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
 
-#: Attributes that a cell keeps when its value changes: its format, and whether its phonetic reading shows.
-_KEPT = ("s", "ph")
 #: Longest text of a cell; a spreadsheet program would call a workbook with a longer one damaged.
 TEXT_LIMIT = 32_767
 
@@ -49,13 +47,12 @@ def value_of(cell: Cell, book: BookPart) -> CellValue:
     text = cell.value
     if text is None:
         return None
-    attributes = cell.attributes
-    kind = attributes.get("t", "n")
+    kind = cell.kind
     if kind == "n":
         if not text:
             return None
         number = float(text)
-        if "s" in attributes and (shown := book.date_styles.get(attributes["s"])):
+        if cell.style and (shown := book.date_styles.get(cell.style)):
             return shown(number, book.from_1904)
         # A number too large for a float is no number that could be calculated with.
         return number if math.isfinite(number) else ErrorValue(text)
@@ -88,18 +85,20 @@ def _iso_moment(text: str) -> datetime | date | time:
     return moment.replace(tzinfo=None) if "T" in text else moment.date()
 
 
-def markup(row: int, column: int, value: Written, attributes: dict[str, str], prefix: str) -> bytes:
+def markup(row: int, column: int, value: Written, style: str, prefix: str) -> bytes:
     """The element of a cell that holds a value and keeps its look.
 
-    >>> markup(1, 0, 2.5, {"r": "A2", "s": "3", "t": "s"}, "")
+    What else the old element carried (metadata, a phonetic reading) belonged to the old value.
+
+    >>> markup(1, 0, 2.5, "3", "")
     b'<c r="A2" s="3"><v>2.5</v></c>'
-    >>> markup(1, 0, "=no formula", {}, "x:")
+    >>> markup(1, 0, "=no formula", "", "x:")
     b'<x:c r="A2" t="inlineStr"><x:is><x:t>=no formula</x:t></x:is></x:c>'
-    >>> markup(1, 0, float("nan"), {}, "")
+    >>> markup(1, 0, float("nan"), "", "")
     b'<c r="A2"/>'
     """
-    kept = "".join(f' {name}="{escape(attributes[name])}"' for name in _KEPT if name in attributes)
-    head = f'<{prefix}c r="{cell_name(row, column)}"{kept}'
+    look = f' s="{escape(style)}"' if style else ""
+    head = f'<{prefix}c r="{cell_name(row, column)}"{look}'
     close = f"</{prefix}c>"
     if isinstance(value, Formula):
         formula = f"<{prefix}f>{text_markup(value.text.removeprefix('='))}</{prefix}f>"

@@ -23,7 +23,7 @@ from strutbook_addin.xlsx.markup import (
 )
 from strutbook_addin.xlsx.patching import patched
 from strutbook_addin.xlsx.relationships import relationships_part
-from strutbook_addin.xlsx.sheet_part import scan
+from strutbook_addin.xlsx.scanning import scan
 
 _WORKSHEET_CONTENT = "application/vnd.openxmlformats-officedocument.spreadsheetml.worksheet+xml"
 _CONTENT_TYPES = "[Content_Types].xml"

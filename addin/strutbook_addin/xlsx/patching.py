@@ -87,7 +87,7 @@ def _row_changes(sheet: SheetPart, row: int, values: Mapping[int, Written], colu
             yield (
                 cell.start,
                 element_end(sheet.data, cell.start, cell.close),
-                markup(row, column, values[column], cell.attributes, sheet.prefix),
+                markup(row, column, values[column], cell.style, sheet.prefix),
             )
             continue
         place = bisect_left(columns, column)
@@ -165,12 +165,9 @@ def _new_cells(sheet: SheetPart, row: int, values: Mapping[int, Written]) -> Ite
 def _new_cell(sheet: SheetPart, row: int, column: int, value: Written) -> bytes:
     """A cell that was not there takes the format of its row, or else of its column."""
     element = sheet.rows.get(row)
-    attributes: dict[str, str] = {}
     if element is not None and element.attributes.get("customFormat") in ("1", "true"):
-        attributes["s"] = element.attributes.get("s", "0")
+        style = element.attributes.get("s", "0")
     else:
         styles = (style for first, last, style in sheet.column_styles if first <= column <= last)
-        attributes["s"] = str(next(styles, 0))
-    if attributes["s"] == "0":
-        del attributes["s"]
-    return markup(row, column, value, attributes, sheet.prefix)
+        style = str(next(styles, 0))
+    return markup(row, column, value, "" if style == "0" else style, sheet.prefix)

@@ -11,7 +11,8 @@ from strutbook_addin.xlsx.book_part import BookPart, read_book_part
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.patching import Stored
-from strutbook_addin.xlsx.sheet_part import Cell, SheetPart, scan
+from strutbook_addin.xlsx.scanning import scan
+from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
 
 _MACRO_CONTENT = b"application/vnd.ms-excel.sheet.macroEnabled.main+xml"
 _PLAIN_CONTENT = b"application/vnd.openxmlformats-officedocument.spreadsheetml.sheet.main+xml"

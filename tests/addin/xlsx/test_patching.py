@@ -10,7 +10,7 @@ ROW = '<row r="2" spans="2:3" customFormat="1" s="5"><c r="B2" s="1"><v>1</v></c
 def test_cell_keeps_its_format_and_loses_what_belonged_to_its_value(book) -> None:
     book.rows('<row r="1"><c r="A1" s="3" t="str" cm="1" vm="2" ph="1"><v>a</v></c><c r="B1" cm="1"/></row>')
     assert book.sheet_after((0, 0, [[2.5]])) == (
-        '<sheetData><row r="1"><c r="A1" s="3" ph="1"><v>2.5</v></c><c r="B1" cm="1"/></row></sheetData>'
+        '<sheetData><row r="1"><c r="A1" s="3"><v>2.5</v></c><c r="B1" cm="1"/></row></sheetData>'
     )
 
 
