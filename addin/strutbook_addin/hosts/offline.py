@@ -89,7 +89,8 @@ class OfflineWorkbook:
         for place, value in _places(row, column, values):
             cell = cells.get(place)
             if _holds(cell, stored.get(place), value):
-                edits.pop(place, None)
+                if place in edits:
+                    del edits[place]
                 continue
             objection = objections.to_clearing if value is None else objections.to_writing
             reason = objection(place, cell)
@@ -233,18 +234,15 @@ def _holds(cell: Cell | None, stored: CellValue, value: Written) -> bool:
         return value is None
     if cell.formula is not None:
         return isinstance(value, Formula) and (cell.formula, cell.value) == (value.text[1:], value.value)
-    if isinstance(value, (int, float)) and isinstance(stored, (int, float)):
-        return not isinstance(stored, bool) and stored == value
-    return type(stored) is type(value) and stored == value
+    # True and 1.0 are equal, and only one of them is a result.
+    return stored == value and (type(stored) is type(value) or not isinstance(stored, bool))
 
 
 def _places(row: int, column: int, values: Sequence[Sequence[Written]]) -> list[tuple[_Place, Written]]:
+    """Values with their places; what is no number clears its cell."""
     return [
-        (
-            (row + down, column + across),
-            None if isinstance(value, float) and not math.isfinite(value) else value,
-        )
-        for down, line in enumerate(values)
+        ((at, column + across), None if isinstance(value, float) and not math.isfinite(value) else value)
+        for at, line in enumerate(values, row)
         for across, value in enumerate(line)
     ]
 
@@ -253,19 +251,17 @@ def _grid(values: Mapping[_Place, CellValue], sheet: str) -> Grid:
     """Rows of values that come row by row."""
     grid: Grid = []
     line: list[CellValue] = []
-    size = 0
+    size, last = 0, -1
     for (row, column), value in values.items():
-        if value is None:
-            continue
-        if row >= len(grid):
-            grid.extend([] for _ in range(row + 1 - len(grid)))
-            line = grid[row]
-        size += column + 1 - len(line)
-        if size + row > GRID_LIMIT:
-            raise UnreadableWorkbook(
-                f"the sheet {sheet} reaches to {cell_name(row, column)}, too far to be read. "
-                "Delete what stands far outside of the tables."
-            )
+        if row != last:
+            size += len(line) + row - last
+            if size > GRID_LIMIT:
+                raise UnreadableWorkbook(
+                    f"the sheet {sheet} reaches to {cell_name(row, column)}, too far to be read. "
+                    "Delete what stands far outside of the tables."
+                )
+            grid.extend([] for _ in range(row - last))
+            line, last = grid[row], row
         if column > len(line):
             line.extend([None] * (column - len(line)))
         line.append(value)

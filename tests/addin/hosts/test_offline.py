@@ -131,7 +131,7 @@ def test_cells_far_away_are_refused_before_they_fill_the_memory(tmp_path: Path) 
         workbook.active.cell(row, 16_384, row)
     workbook.save(tmp_path / "far.xlsx")
     book = OfflineWorkbook.open(tmp_path / "far.xlsx")
-    with pytest.raises(UnreadableWorkbook, match=r"the sheet Sheet reaches to XFD306, too far to be read"):
+    with pytest.raises(UnreadableWorkbook, match=r"the sheet Sheet reaches to XFD307, too far to be read"):
         book.read("Sheet")
     assert offline.GRID_LIMIT == 5_000_000
 
