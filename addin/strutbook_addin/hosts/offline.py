@@ -22,12 +22,13 @@ from strutbook_addin.xlsx.patching import patched, stored_values_changed
 from strutbook_addin.xlsx.recalculation import Recalculated, recalculated, refreshed_values, user_formulas
 from strutbook_addin.xlsx.saving import check_target, replace_file
 from strutbook_addin.xlsx.scanning import scan
-from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
+from strutbook_addin.xlsx.sheet_part import COLUMNS, ROWS, Cell, SheetPart
 
 #: Most cells, empty ones between them included, that a sheet is read into.
 GRID_LIMIT = 5_000_000
 _FORMULA = re.compile(rb"<(?:[\w.-]+:)?f[\s/>]")
 _Place = tuple[int, int]
+_Places = list[tuple[_Place, Written]]
 
 
 class OfflineWorkbook:
@@ -78,15 +79,14 @@ class OfflineWorkbook:
         if sheet not in self._book.sheets:
             if any(sheet.casefold() == other.casefold() for other in self._book.other_sheets):
                 return [Refusal(sheet, row, column, "the sheet of this name holds a chart and no cells")]
-            edits = self._edits.setdefault(sheet, {})
-            for place, value in _places(row, column, values):
-                edits[place] = value
-            return []
+            within, refusals = _within_sheet(sheet, row, column, values)
+            self._edits.setdefault(sheet, {}).update(within)
+            return refusals
         cells, stored = self._part(sheet).cells, self._stored(sheet)
         objections = self._objections_on(sheet)
         edits = self._edits.setdefault(sheet, {})
-        refusals: list[Refusal] = []
-        for place, value in _places(row, column, values):
+        within, refusals = _within_sheet(sheet, row, column, values)
+        for place, value in within:
             cell = cells.get(place)
             if _holds(cell, stored.get(place), value):
                 if place in edits:
@@ -228,6 +228,22 @@ def _stamp(path: Path) -> tuple[int, int]:
     return state.st_mtime_ns, state.st_size
 
 
+def _within_sheet(
+    sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]
+) -> tuple[_Places, list[Refusal]]:
+    """Values with their places, and refusals of those to whose places no sheet reaches."""
+    places = _places(row, column, values)
+    if row + len(values) <= ROWS and column + max(map(len, values), default=0) <= COLUMNS:
+        return places, []
+    within = [(place, value) for place, value in places if place[0] < ROWS and place[1] < COLUMNS]
+    kept = dict(within)
+    return within, [
+        Refusal(sheet, *place, "no sheet reaches so far")
+        for place, value in places
+        if place not in kept and value is not None
+    ]
+
+
 def _holds(cell: Cell | None, stored: CellValue, value: Written) -> bool:
     """Whether a cell holds already what is to be written."""
     if cell is None:
@@ -238,7 +254,7 @@ def _holds(cell: Cell | None, stored: CellValue, value: Written) -> bool:
     return stored == value and (type(stored) is type(value) or not isinstance(stored, bool))
 
 
-def _places(row: int, column: int, values: Sequence[Sequence[Written]]) -> list[tuple[_Place, Written]]:
+def _places(row: int, column: int, values: Sequence[Sequence[Written]]) -> _Places:
     """Values with their places; what is no number clears its cell."""
     return [
         ((at, column + across), None if isinstance(value, float) and not math.isfinite(value) else value)

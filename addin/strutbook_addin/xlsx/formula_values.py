@@ -60,8 +60,8 @@ def formula_values(sheet: str, part: SheetPart, book: BookPart, calculate: Calla
     for place, cell in wanted.items():
         new = cells.get(place)
         if cell.awaits_value:
-            error = "" if new is None else new.value if new.kind == "e" else None
-            if error is not None:
+            if new is None or new.kind == "e":
+                error = new.value if new is not None else None
                 reason = error or f"not calculated ({result.reason or 'the library left it out'})"
                 found.values[place] = ErrorValue(reason, f"={cell.formula}")
                 continue

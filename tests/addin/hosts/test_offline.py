@@ -136,6 +136,17 @@ def test_cells_far_away_are_refused_before_they_fill_the_memory(tmp_path: Path) 
     assert offline.GRID_LIMIT == 5_000_000
 
 
+@pytest.mark.parametrize("sheet", ["Joints", "New"])
+def test_results_that_would_lie_beyond_the_sheet_are_refused(solved, sheet: str) -> None:
+    workbook = OfflineWorkbook.open(solved.path)
+    refusals = workbook.write(sheet, 1_048_574, 16_383, [[1.0, 2.0], [3.0, None], [5.0]])
+    assert workbook.write(sheet, 0, 16_383, [[1.0, 2.0], [3.0]])
+    assert [(refusal.row, refusal.column) for refusal in refusals] == [(1_048_574, 16_384), (1_048_576, 16_383)]
+    assert refusals[0].reason == "no sheet reaches so far"
+    workbook.save(solved.path)
+    assert [row[-1] for row in OfflineWorkbook.open(solved.path).read(sheet)[-2:]] == [1.0, 3.0]
+
+
 def test_one_cell_far_away_costs_nothing_but_its_row(tmp_path: Path) -> None:
     workbook = openpyxl.Workbook()
     workbook.active["A1"], workbook.active["XFD9999"] = 1, 2
