@@ -63,7 +63,8 @@ def parse(data: bytes, part: str) -> ET.Element:
     try:
         parser.feed(data)
         root: ET.Element = parser.close()
-    except ET.ParseError as error:
+    except (ET.ParseError, LookupError, ValueError) as error:
+        # The latter two say that the declared encoding is unknown, or is none for XML.
         raise damaged(part, error) from error
     return root
 

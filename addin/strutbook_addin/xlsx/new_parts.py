@@ -158,7 +158,10 @@ class BookChanges:
         found = {local_name(element.name): element for element in root.children}
         changes: list[tuple[int, int, bytes]] = []
         if names:
-            changes.append(_inside(data, found["sheets"], self._sheet_tags(found["sheets"], names)))
+            sheets = found.get("sheets")
+            if sheets is None:
+                raise damaged(part, ValueError("it lists no sheets"))
+            changes.append(_inside(data, sheets, self._sheet_tags(sheets, names)))
         if asked:
             if "calcPr" in found:
                 start = found["calcPr"].start
@@ -172,11 +175,14 @@ class BookChanges:
 
     def _sheet_tags(self, sheets: Element, names: Mapping[str, str]) -> str:
         """Elements of the new sheets, written like those that are there (some readers know only `r:id`)."""
-        like = sheets.children[0]
-        identity_name = next(name for name in like.attributes if name.endswith(":id"))
+        named = ((sheet, name) for sheet in sheets.children for name in sheet.attributes if name.endswith(":id"))
+        like, identity_name = next(named, (None, ""))
+        if like is None:
+            raise damaged(self.book.part, ValueError("none of its sheets refers to a part"))
         declared = f"xmlns:{identity_name.partition(':')[0]}"
         namespace = f' {declared}="{like.attributes[declared]}"' if declared in like.attributes else ""
-        first = 1 + max(int(sheet.attributes.get("sheetId", "0")) for sheet in sheets.children)
+        numbers = (sheet.attributes.get("sheetId", "") for sheet in sheets.children)
+        first = 1 + max((int(number) for number in numbers if number.isdecimal()), default=0)
         return "".join(
             f'<{like.name}{namespace} name="{escape(sheet)}" sheetId="{first + place}" {identity_name}="{identity}"/>'
             for place, (sheet, identity) in enumerate(self._identities(names).items())

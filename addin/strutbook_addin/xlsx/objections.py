@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from strutbook_addin.sheets import is_ours
-from strutbook_addin.xlsx.markup import attribute, parse
+from strutbook_addin.xlsx.markup import attribute, damaged, parse
 from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.relationships import relationships_of
 from strutbook_addin.xlsx.sheet_part import Area, Cell, SheetPart, area_of
@@ -67,7 +67,10 @@ def _table_headers(package: Package, part: SheetPart) -> Iterator[tuple[_Place, 
         root = parse(package.read(relationship.target), relationship.target)
         if attribute(root, "headerRowCount") == "0":
             continue
-        area = area_of(attribute(root, "ref"))
+        try:
+            area = area_of(attribute(root, "ref"))
+        except ValueError as error:
+            raise damaged(relationship.target, error) from error
         name = attribute(root, "displayName")
         for column in range(area.first_column, area.last_column + 1):
             yield (area.first_row, column), f"it is the header of a column of the table {name}"

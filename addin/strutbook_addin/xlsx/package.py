@@ -176,10 +176,10 @@ class Package:
             central_end = position + _CENTRAL.size + sum(fields[12:15])
             start, end = info.header_offset, following[info.header_offset]
             content = start + _LOCAL.size
-            if content <= end:
+            if start >= 0 and content <= end:
                 content += sum(_LOCAL.unpack_from(self.data, start)[10:12])
             # Parts that overlap make a small file inflate without end, and could not be copied one by one.
-            if content + info.compress_size > end:
+            if start < 0 or content + info.compress_size > end:
                 raise UnreadableWorkbook(f"the file is damaged near its part {info.filename}. {_REPAIR}")
             entries.append(_Entry(info, self.data[position:central_end], start, content, end))
             position = central_end

@@ -5,6 +5,7 @@ Rows and cells that are missing are made in their order.
 
 from __future__ import annotations
 
+import re
 from bisect import bisect_left
 from collections.abc import Iterator, Mapping
 
@@ -111,10 +112,11 @@ def _opening_changes(
 ) -> Iterator[_Change]:
     """The start tag of a row that gets new cells: its spans grow, and an empty element opens."""
     new = opening
-    spans = element.attributes.get("spans", "")
-    if spans:
-        ends = [int(end) for span in spans.split() for end in span.split(":")]
-        new = with_attribute(new, "spans", f"{min(*ends, first + 1)}:{max(*ends, last + 1)}")
+    ends = re.split("[: ]", element.attributes.get("spans", "").strip())
+    # Spans only tell readers how many cells to expect; those that make no sense stay as they are.
+    if all(end.isdecimal() for end in ends):
+        columns = [first + 1, last + 1, *map(int, ends)]
+        new = with_attribute(new, "spans", f"{min(columns)}:{max(columns)}")
     if empty:
         cells = b"".join(cell for group in inserted.values() for cell in group)
         new = new[:-2].rstrip() + b">" + cells + f"</{sheet.prefix}row>".encode()

@@ -78,6 +78,12 @@ def test_part_that_is_no_xml_is_refused(book, part: str) -> None:
     assert f"the part {part} is damaged" in refusal(book)
 
 
+@pytest.mark.parametrize("encoding", ["no-such-thing", "utf-7", "hex"])
+def test_encoding_that_is_none_for_markup_is_refused(book, encoding: str) -> None:
+    book.parts["xl/workbook.xml"] = f'<?xml version="1.0" encoding="{encoding}"?>{book.parts["xl/workbook.xml"]}'
+    assert "the part xl/workbook.xml is damaged" in refusal(book)
+
+
 @pytest.mark.parametrize(
     "target",
     [

@@ -7,6 +7,8 @@ import re
 import openpyxl
 import pytest
 
+from strutbook_addin.xlsx import UnreadableWorkbook
+
 MAIN = "http://schemas.openxmlformats.org/spreadsheetml/2006/main"
 FORMULA = '<row r="1"><c r="A1"><f>B1*2</f><v>2</v></c><c r="B1"><v>1</v></c></row>'
 
@@ -53,6 +55,23 @@ def test_new_sheets_take_free_names_and_numbers(book, parts) -> None:
     ]
     again = book.reopened()
     assert [again.read(name) for name in again.names()[1:]] == [[["One"]], [["Two & three"]]]
+
+
+@pytest.mark.parametrize("number", ["", "x", "-3"])
+def test_sheets_without_proper_numbers_are_no_obstacle(book, number: str) -> None:
+    book.replace("xl/workbook.xml", 'sheetId="1"', f'sheetId="{number}"')
+    workbook = book.open()
+    workbook.write("T", 0, 0, [["x"]])
+    workbook.save(book.path)
+    assert 'name="T" sheetId="1"' in workbook_part(book)
+
+
+def test_workbook_whose_sheets_refer_to_nothing_is_refused(book) -> None:
+    book.replace("xl/workbook.xml", 'r:id="rId1"', "")
+    workbook = book.open()
+    workbook.write("T", 0, 0, [["x"]])
+    with pytest.raises(UnreadableWorkbook, match="none of its sheets refers to a part"):
+        workbook.save(book.path)
 
 
 def test_new_sheet_is_written_with_the_prefix_of_the_others(book) -> None:

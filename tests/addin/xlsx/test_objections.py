@@ -2,7 +2,10 @@
 
 from __future__ import annotations
 
+import pytest
+
 from strutbook_addin.sheets import Formula
+from strutbook_addin.xlsx import UnreadableWorkbook
 
 MAIN = "http://schemas.openxmlformats.org/spreadsheetml/2006/main"
 RELATIONS = "http://schemas.openxmlformats.org/officeDocument/2006/relationships"
@@ -85,6 +88,17 @@ def test_header_of_a_table_stays(book) -> None:
     assert reasons(book, (1, 1, [["Member", "Length"]])) == {(1, 2): reason}
     book.parts["xl/tables/table1.xml"] = f'<table xmlns="{MAIN}" displayName="T" ref="B2:C9" headerRowCount="0"/>'
     assert book.write((1, 2, [["Length"]])) == []
+
+
+def test_table_that_does_not_say_where_it_stands_is_refused(book) -> None:
+    book.sheet('<sheetData/><tableParts count="1"><tablePart r:id="rId1"/></tableParts>')
+    book.parts["xl/worksheets/_rels/sheet1.xml.rels"] = (
+        '<Relationships xmlns="http://schemas.openxmlformats.org/package/2006/relationships">'
+        f'<Relationship Id="rId1" Type="{RELATIONS}/table" Target="../tables/table1.xml"/></Relationships>'
+    )
+    book.parts["xl/tables/table1.xml"] = f'<table xmlns="{MAIN}" displayName="T" ref="somewhere"/>'
+    with pytest.raises(UnreadableWorkbook, match=r"the part xl/tables/table1\.xml is damaged"):
+        book.write((0, 0, [[1.0]]))
 
 
 def test_formula_of_our_own_is_overwritten(book) -> None:

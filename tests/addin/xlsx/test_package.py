@@ -133,6 +133,12 @@ def test_overlapping_parts_are_refused() -> None:
     assert "damaged" in refusal(overlapping)
 
 
+def test_parts_that_would_begin_before_the_file_are_refused() -> None:
+    data = zipped(("a.xml", b"<a/>" * 99), ("b.xml", b"<b/>"))
+    # The directory, moved towards the start, says that every part begins earlier than it does.
+    assert "damaged" in refusal(data[20:])
+
+
 def test_damaged_part_is_refused_when_it_is_read() -> None:
     data = zipped(("a.txt", b"some text"), method=zipfile.ZIP_STORED).replace(b"some text", b"same text", 1)
     package = Package(data)

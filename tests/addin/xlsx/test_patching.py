@@ -41,6 +41,12 @@ def test_spans_of_a_row_grow_with_it(book, column: int, spans: str) -> None:
     assert f'<row r="2" spans="{spans}" customFormat' in book.rows(ROW).sheet_after((1, column, [[9.0]]))
 
 
+@pytest.mark.parametrize("spans", ["", "one:two", "1:", "-1:2"])
+def test_spans_that_make_no_sense_stay(book, spans: str) -> None:
+    after = book.rows(f'<row r="2" spans="{spans}"/>').sheet_after((1, 7, [[9.0]]))
+    assert f'<row r="2" spans="{spans}"><c r="H2">' in after
+
+
 def test_new_rows_stand_in_order(book) -> None:
     row = '<row r="4"><c r="A4"><v>4</v></c></row>'
     after = book.rows(row).sheet_after((5, 0, [[6.0]]), (2, 1, [[3.0]]), (0, 0, [[1.0]]))
