@@ -4,11 +4,12 @@ from __future__ import annotations
 
 import hashlib
 
+from strutbook_addin.tables.labels import Labels
 from strutbook_addin.tables.reading import TableData
-from strutbook_addin.tables.schema import INPUT_TABLES, Kind
+from strutbook_addin.tables.schema import INPUT_TABLES, JOB, Kind
 
 
-def digest(tables: dict[str, TableData]) -> str:
+def digest(tables: dict[str, TableData], labels: Labels) -> str:
     """Short digest of the parsed inputs: values in SI units and names, not their looks or places.
 
     Moving a table, reordering columns or adding columns of one's own leaves it as it is.
@@ -29,4 +30,9 @@ def digest(tables: dict[str, TableData]) -> str:
         for header in sorted(data.open_numbers):
             hashed.update(f"<{header}>".encode())
             hashed.update((data.open_numbers[header] + 0.0).tobytes())
+    # Labels that change what is checked; a blank one leaves the digest as it is without the label.
+    for name in ("Standard", "Deflection limit", "Span"):
+        value = labels.texts.get(name, "") or labels.numbers.get(name)
+        if value:
+            hashed.update(f"<{JOB.sheet}: {name}={value!r}>".encode())
     return hashed.hexdigest()[:16]

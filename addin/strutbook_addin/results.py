@@ -27,6 +27,7 @@ class Results:
     model: Model
     analysis: strutbook.Analysis
     forces: FloatArray  #: (members, combinations) N, tension positive
+    slack: NDArray[np.bool_]  #: (members, combinations) whether a member that takes one kind of force only is slack
     reactions: FloatArray  #: (supports, combinations) N along the held directions
     displacements: FloatArray | None  #: (joints, dimensions, combinations) m
 
@@ -145,12 +146,18 @@ def solve(model: Model) -> Results:
     """
     # Misfits are the last case of the actions and act in every combination.
     factors = np.vstack([model.combinations.factors, np.ones(len(model.combinations.names))])
-    analysis = strutbook.analyse(model.truss, model.actions, factors)
+    if model.takes.any():
+        found = strutbook.analyse_one_sided(model.truss, model.actions, model.takes, factors)
+        analysis, slack = found.analysis, found.slack
+    else:
+        analysis = strutbook.analyse(model.truss, model.actions, factors)
+        slack = np.zeros(analysis.forces.shape, dtype=np.bool_)
     displacements = analysis.displacements
     return Results(
         model,
         analysis,
         _without_noise(analysis.forces),
+        slack,
         _without_noise(analysis.reactions),
         None if displacements is None else _without_noise(displacements),
     )

@@ -65,7 +65,7 @@ def _calculate(sheets: Sheets, tell: Callable[[str], None]) -> tuple[Outcome, Wo
     if results is not None:
         _report_solution(results, workbook.tables, findings)
     findings.add(Level.NOTE, NOT_CHECKED, CAUTION)
-    return Outcome(tuple(findings), digest(workbook.tables), results), workbook
+    return Outcome(tuple(findings), digest(workbook.tables, workbook.labels), results), workbook
 
 
 def _solve(model: Model, tables: dict[str, TableData], findings: Findings) -> Results | None:
@@ -86,6 +86,18 @@ def _solve(model: Model, tables: dict[str, TableData], findings: Findings) -> Re
                 "every joint has the same z, so the truss is flat and nothing holds it across its plane.",
                 "Clear z everywhere for a plane truss.",
             )
+    except strutbook.SlackMechanism as slack:
+        _report_slack_mechanism(slack, model, tables["Members"], findings)
+    except strutbook.NotSettled as unsettled:
+        combination = model.combinations.names[unsettled.combination]
+        tables["Members"].report(
+            findings,
+            int(np.flatnonzero(model.takes)[0]),
+            "Takes",
+            f"in the combination {combination} members keep going slack and tight in turn; "
+            "no consistent state was found.",
+            "Look at misfits, and at members that take one kind of force only.",
+        )
     except strutbook.StiffnessNeeded as needed:
         tables["Members"].report(
             findings,
@@ -100,6 +112,26 @@ def _solve(model: Model, tables: dict[str, TableData], findings: Findings) -> Re
     return None
 
 
+def _report_slack_mechanism(
+    slack: strutbook.SlackMechanism, model: Model, members: TableData, findings: Findings
+) -> None:
+    """The truss falls once members have gone slack: which, in which combination, and what then moves."""
+    left = np.delete(model.truss.members, slack.slack, axis=0)
+    truss = strutbook.Truss(model.truss.joints, left, model.truss.supports)
+    what, _ = strutbook.describe_mechanism(slack.stability.mechanisms[0], truss, model.geometry.joints.names)
+    names = [model.geometry.members.names[member] for member in slack.slack.tolist()]
+    several = len(names) > 1
+    listed = ", ".join(names[:6]) + (f" and {len(names) - 6} more" if len(names) > 6 else "")
+    members.report(
+        findings,
+        int(slack.slack[0]),
+        "Takes",
+        f"in the combination {model.combinations.names[slack.combination]} the member{'s' * several} {listed} "
+        f"go{'es' * (not several)} slack, and then the truss can move: {what}.",
+        "Let the member take both kinds of force, or add one that takes the other kind.",
+    )
+
+
 def _report_solution(results: Results, tables: dict[str, TableData], findings: Findings) -> None:
     worst = float(results.analysis.residual.max(initial=0.0))
     if worst > RESIDUAL:
@@ -108,6 +140,18 @@ def _report_solution(results: Results, tables: dict[str, TableData], findings: F
             f"the joints balance only to {worst:.1e} of the largest load; {RESIDUAL:.0e} is usual.",
             "The truss may be close to a mechanism; look at its stiffnesses and geometry.",
             sheet=tables["Joints"].layout.sheet,
+        )
+    if results.slack.any():
+        members = tables["Members"]
+        first = int(results.slack.any(axis=1).argmax())
+        count = int(results.slack.any(axis=1).sum())
+        members.report(
+            findings,
+            first,
+            "Takes",
+            f"{count} member{'s go' if count > 1 else ' goes'} slack in some combination and carr"
+            f"{'y' if count > 1 else 'ies'} nothing there; combinations were solved one by one.",
+            level=Level.NOTE,
         )
     if results.displacements is None:
         findings.add(

@@ -8,8 +8,9 @@ from strutbook_addin.findings import Findings, Level
 from strutbook_addin.model.combinations import ONLY_CASE
 from strutbook_addin.sheets import Grid, Sheets
 from strutbook_addin.tables.headers import nearest
+from strutbook_addin.tables.labels import Labels, read_labels
 from strutbook_addin.tables.reading import TableData, read_table
-from strutbook_addin.tables.schema import COMBINATIONS, INPUT_TABLES, TABLES, Table, normal
+from strutbook_addin.tables.schema import COMBINATIONS, INPUT_TABLES, JOB, TABLES, Table, normal
 
 
 @dataclass(frozen=True, eq=False)
@@ -19,6 +20,7 @@ class Workbook:
     names: dict[str, str]  #: name of each sheet in the workbook
     grids: dict[str, Grid]
     tables: dict[str, TableData]  #: input tables whose headers were found
+    labels: Labels  #: inputs of the sheet `Job`
 
 
 def read_workbook(sheets: Sheets, findings: Findings) -> Workbook:
@@ -38,8 +40,9 @@ def read_workbook(sheets: Sheets, findings: Findings) -> Workbook:
             read(table, set())
     # The cases are known now, so a column of factors can be told from a remark.
     read(COMBINATIONS, {ONLY_CASE, *(name for data in tables.values() for name in data.text("Case"))})
+    labels = read_labels(JOB, names.get(JOB.sheet, JOB.sheet), grids.get(JOB.sheet, []), findings)
     findings.extend(sheets.findings())
-    return Workbook(names, grids, tables)
+    return Workbook(names, grids, tables, labels)
 
 
 def _sheet_names(sheets: Sheets, findings: Findings) -> dict[str, str]:

@@ -13,6 +13,7 @@ from strutbook_addin.picture_writing import write_picture
 from strutbook_addin.results import Results
 from strutbook_addin.sheets import LINK, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
+from strutbook_addin.tables.labels import VALUES, label_rows
 from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
 from strutbook_addin.tables.schema import (
     DISPLACEMENTS,
@@ -22,7 +23,6 @@ from strutbook_addin.tables.schema import (
     REACTIONS,
     Column,
     Table,
-    normal,
 )
 from strutbook_addin.tables.units import Dimension, Unit, UnitProblem, split_header, unit_of
 from strutbook_addin.tables.writing import TableWriter, cells, header_text
@@ -62,6 +62,8 @@ def default_units(workbook: Workbook) -> dict[Dimension, Unit]:
     return {
         Dimension.FORCE: forces[0] if forces else unit_of("kip" if customary else "kN", Dimension.FORCE),
         Dimension.LENGTH: unit_of("in" if customary else "mm", Dimension.LENGTH),
+        Dimension.AREA: unit_of("in2" if customary else "cm2", Dimension.AREA),
+        Dimension.MASS: unit_of("lb" if customary else "kg", Dimension.MASS),
     }
 
 
@@ -100,21 +102,20 @@ def _result_sheet(table: Table, workbook: Workbook) -> tuple[Layout, Grid]:
 def _write_job(writer: TableWriter, outcome: Outcome, workbook: Workbook) -> None:
     """Stamp the sheet `Job`: what was solved, when, by which version, from which inputs."""
     sheet, grid = workbook.names.get(JOB.sheet, JOB.sheet), workbook.grids.get(JOB.sheet, [])
-    rows: dict[str, tuple[int, str]] = {}
-    for row, values in enumerate(grid):
-        if values and isinstance(values[0], str):
-            rows.setdefault(normal(split_header(values[0])[0]), (row, values[0]))
+    rows = label_rows(JOB, grid)
     next_row = len(grid)
     stamp = _stamp(outcome)
     for column in JOB.results:
-        row, label = rows.get(normal(column.name), (next_row, ""))
+        row, label = rows.get(column.name, (next_row, ""))
+        if not label and column.name not in stamp:
+            continue
         unit = _label_unit(label, column, writer)
         if not label:
             next_row += 1
             writer.write(sheet, row, 0, [[header_text(column.name, unit)]])
         value = stamp.get(column.name)
         number = isinstance(value, float)
-        writer.write(sheet, row, 1, [[cells(np.array([value]), unit)[0] if number else value]])
+        writer.write(sheet, row, VALUES, [[cells(np.array([value]), unit)[0] if number else value]])
 
 
 def _label_unit(label: str, column: Column, writer: TableWriter) -> Unit | None:

@@ -40,7 +40,7 @@ def test_sizes_of_a_shape_are_a_sensible_first_guess(tmp_path, as_read, shape, u
     file = tmp_path / "new.xlsx"
     new_workbook(file, shape, units=units)
     results = outcome_of(as_read, file).results
-    stress = np.abs(results.forces) / results.model.rigidity.area[:, None]
+    stress = np.abs(results.forces) / results.model.properties.area[:, None]
     assert 80e6 < stress.max() < 265e6
     extent = np.ptp(results.model.truss.joints, axis=0).max()
     assert results.largest_displacement() < extent / 300
@@ -68,7 +68,7 @@ def test_demonstration_is_realistic(tmp_path, as_read):
     assert len(results.model.geometry.members) == 53
     assert results.analysis.stability.indeterminacy == 8
     assert 24.0 / 800 < results.largest_displacement() < 24.0 / 400
-    stress = np.abs(results.forces) / results.model.rigidity.area[:, None]
+    stress = np.abs(results.forces) / results.model.properties.area[:, None]
     assert 100e6 < stress.max() < 355e6 / 1.5
     assert results.analysis.residual.max() <= 1e-9
 

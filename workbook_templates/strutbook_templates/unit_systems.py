@@ -9,7 +9,7 @@ from strutbook_addin.tables.schema import Column
 from strutbook_addin.tables.units import Dimension
 
 #: Lengths of the size of the truss; all other lengths (displacements, misfits) are of the size of a gap.
-_LARGE_LENGTHS = frozenset({"x", "y", "z", "Length"})
+_LARGE_LENGTHS = frozenset({"x", "y", "z", "Length", "Span", "Buckling length in", "Buckling length out"})
 
 #: Digits behind the point that an engineer reads in each unit; units that are not here show what was typed.
 _DECIMALS = {"m": 3, "mm": 2, "ft": 3, "in": 3, "kN": 2, "kip": 2}
@@ -64,6 +64,7 @@ METRIC = UnitSystem(
         Dimension.TEMPERATURE: "K",
         Dimension.DENSITY: "kg/m3",
         Dimension.EXPANSION: "1e-6/K",
+        Dimension.MASS: "kg",
     },
     small_length="mm",
     paper="A4",
@@ -81,6 +82,7 @@ US = UnitSystem(
         Dimension.TEMPERATURE: "degF",
         Dimension.DENSITY: "lb/ft3",
         Dimension.EXPANSION: "1e-6/degF",
+        Dimension.MASS: "lb",
     },
     small_length="in",
     paper="Letter",

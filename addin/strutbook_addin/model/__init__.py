@@ -4,14 +4,24 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+import numpy as np
+
 import strutbook
 from strutbook_addin.findings import Findings
 from strutbook_addin.model.actions import ActionReader
 from strutbook_addin.model.combinations import Combinations, read_cases, read_combinations
 from strutbook_addin.model.geometry import Geometry, read_geometry
-from strutbook_addin.model.rigidity import Rigidity, read_rigidity
+from strutbook_addin.model.properties import Properties, read_properties
+from strutbook_addin.model.references import IndexArray
 from strutbook_addin.model.supports import Held, read_supports
 from strutbook_addin.tables.reading import TableData
+
+_TAKES = {
+    "": strutbook.Takes.BOTH,
+    "both": strutbook.Takes.BOTH,
+    "tension": strutbook.Takes.TENSION,
+    "compression": strutbook.Takes.COMPRESSION,
+}
 
 
 @dataclass(frozen=True, eq=False)
@@ -20,7 +30,8 @@ class Model:
 
     geometry: Geometry
     held: Held
-    rigidity: Rigidity
+    properties: Properties
+    takes: IndexArray  #: (members,) strutbook.Takes
     combinations: Combinations
     truss: strutbook.Truss
     actions: strutbook.Actions
@@ -31,11 +42,11 @@ def build_model(tables: dict[str, TableData], findings: Findings) -> Model | Non
     joints, members = tables["Joints"], tables["Members"]
     geometry = read_geometry(joints, members, findings)
     held = read_supports(tables["Supports"], geometry, findings)
-    rigidity = read_rigidity(members, tables.get("Sections"), tables.get("Materials"), findings)
+    properties = read_properties(members, tables.get("Sections"), tables.get("Materials"), findings)
     load_tables = [tables[sheet] for sheet in ("Loads", "Member loads", "Settlements") if sheet in tables]
     cases = read_cases(tables.get("Cases"), load_tables)
     combinations = read_combinations(tables.get("Combinations"), cases, findings)
-    reader = ActionReader(geometry, rigidity, held, cases, findings)
+    reader = ActionReader(geometry, properties, held, cases, findings)
     reader.add_joint_loads(tables["Loads"])
     if "Member loads" in tables:
         reader.add_member_loads(tables["Member loads"])
@@ -49,6 +60,7 @@ def build_model(tables: dict[str, TableData], findings: Findings) -> Model | Non
         joints=geometry.coordinates,
         members=geometry.ends,
         supports=strutbook.Supports(held.joint, held.direction, held.stiffness),
-        axial_rigidity=rigidity.axial,
+        axial_rigidity=properties.axial,
     )
-    return Model(geometry, held, rigidity, combinations, truss, reader.actions(truss))
+    takes = np.array([_TAKES[word] for word in members.text("Takes")], dtype=np.intp)
+    return Model(geometry, held, properties, takes, combinations, truss, reader.actions(truss))

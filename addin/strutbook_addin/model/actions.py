@@ -11,8 +11,8 @@ import strutbook
 from strutbook_addin.findings import Findings, Level
 from strutbook_addin.model.combinations import Cases
 from strutbook_addin.model.geometry import Geometry
+from strutbook_addin.model.properties import Properties
 from strutbook_addin.model.references import IndexArray
-from strutbook_addin.model.rigidity import Rigidity
 from strutbook_addin.model.supports import Held
 from strutbook_addin.tables.reading import FloatArray, TableData
 
@@ -23,9 +23,11 @@ _Lumping = Callable[[strutbook.Truss, ArrayLike, ArrayLike], FloatArray]
 class ActionReader:
     """Collects the actions of every case; the last case holds the misfits, which act always."""
 
-    def __init__(self, geometry: Geometry, rigidity: Rigidity, held: Held, cases: Cases, findings: Findings) -> None:
+    def __init__(
+        self, geometry: Geometry, properties: Properties, held: Held, cases: Cases, findings: Findings
+    ) -> None:
         self._geometry = geometry
-        self._rigidity = rigidity
+        self._properties = properties
         self._held = held
         self._cases = cases
         self._findings = findings
@@ -106,12 +108,12 @@ class ActionReader:
         table = self._cases.table
         if table is None or not np.any(self._cases.self_weight):
             return
-        mass = self._rigidity.area * self._rigidity.density
+        mass = self._properties.area * self._properties.density
         missing = np.flatnonzero(np.isnan(mass))
         if len(missing):
             first = int(missing[0])
             column, what = ("Material", "a material with a density")
-            if np.isnan(self._rigidity.area[first]):
+            if np.isnan(self._properties.area[first]):
                 column, what = ("Area", "an area")
             others = f" and {len(missing) - 1} more lack" if len(missing) > 1 else " lacks"
             members.report(
@@ -133,10 +135,10 @@ class ActionReader:
         for case, member, change in self._warmings:
             warmed = np.zeros(self._free_elongation.shape)
             np.add.at(warmed, (member, case), change)
-            expansion = np.nan_to_num(self._rigidity.expansion)
+            expansion = np.nan_to_num(self._properties.expansion)
             self._free_elongation += strutbook.thermal_elongation(truss, expansion, warmed)
         if np.any(self._cases.self_weight):
-            weight = strutbook.self_weight(truss, self._rigidity.area * self._rigidity.density)
+            weight = strutbook.self_weight(truss, self._properties.area * self._properties.density)
             self._joint_loads[:, :, :-1] += weight[:, :, np.newaxis] * self._cases.self_weight
         return strutbook.Actions(self._joint_loads, self._free_elongation, self._settlement)
 
@@ -180,7 +182,7 @@ class ActionReader:
     ) -> None:
         change = np.nan_to_num(table.number("Temperature change"))
         warmed = np.flatnonzero(known & (change != 0))
-        expansion = self._rigidity.expansion[member[warmed]]
+        expansion = self._properties.expansion[member[warmed]]
         for row in warmed[np.isnan(expansion)]:
             table.report(
                 self._findings,

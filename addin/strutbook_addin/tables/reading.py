@@ -111,6 +111,25 @@ def found(value: CellValue) -> str:
     return f"{value:.10g}" if isinstance(value, float) else str(value)
 
 
+def cell_number(column: Column, value: CellValue) -> float | None:
+    """Number of a cell when it is one that the column takes."""
+    if isinstance(value, (int, float)) and not isinstance(value, bool):
+        number = float(value)
+        if math.isfinite(number) and _within(column, np.array([number]))[0]:
+            return number
+    return None
+
+
+def _within(column: Column, numbers: FloatArray) -> NDArray[np.bool_]:
+    """Which numbers lie in the bounds of the column."""
+    sensible: NDArray[np.bool_] = np.abs(numbers) <= LARGEST
+    if column.bound is Bound.POSITIVE:
+        return sensible & (numbers >= 1 / LARGEST)
+    if column.bound is Bound.NOT_NEGATIVE:
+        return sensible & (numbers >= 0)
+    return sensible
+
+
 def remedy(value: CellValue, column: Column) -> str:
     """What to do about a cell that does not hold what its column takes."""
     if is_blank(value):
@@ -161,7 +180,7 @@ class _Reader:
         """Numbers as they stand in the cells, NaN where a cell is blank or wrong."""
         if {type(value) for value in values} <= {float, int}:
             numbers = np.array(values, dtype=np.float64)
-            if np.isfinite(numbers).all() and self._within(numbers).all():
+            if np.isfinite(numbers).all() and _within(self._column, numbers).all():
                 return numbers
         return np.array([self._number(row, value) for row, value in enumerate(values)], dtype=np.float64)
 
@@ -181,23 +200,14 @@ class _Reader:
                 )
             first.setdefault(name, row)
 
-    def _within(self, numbers: FloatArray) -> NDArray[np.bool_]:
-        sensible = np.abs(numbers) <= LARGEST
-        if self._column.bound is Bound.POSITIVE:
-            return sensible & (numbers >= 1 / LARGEST)
-        if self._column.bound is Bound.NOT_NEGATIVE:
-            return sensible & (numbers >= 0)
-        return sensible
-
     def _number(self, row: int, value: CellValue) -> float:
         if is_blank(value) and not self._column.required:
             return math.nan
-        if isinstance(value, (int, float)) and not isinstance(value, bool):
-            number = float(value)
-            if math.isfinite(number) and self._within(np.array([number]))[0]:
-                return number
-        self._wrong(row, value)
-        return math.nan
+        number = cell_number(self._column, value)
+        if number is None:
+            self._wrong(row, value)
+            return math.nan
+        return number
 
     def _text(self, row: int, value: CellValue) -> str:
         if is_blank(value):

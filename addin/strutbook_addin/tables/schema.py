@@ -151,6 +151,23 @@ JOB = Table(
         _text("Prepared by", "Who filled in the tables."),
         _text("Checked by", "Who checked the calculation."),
         _text("Date", "Date of the calculation."),
+        _text("Standard", "Standard to which members are checked; blank checks none."),
+        _text(
+            "Combination rule",
+            "Rule that fills an empty sheet Combinations from the natures of the cases; blank fills nothing in.",
+        ),
+        _number(
+            "Deflection limit",
+            None,
+            "The largest deflection may be the span divided by this number; blank is no limit.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Span",
+            Dimension.LENGTH,
+            "Span for the deflection limit; blank is the largest distance between supports.",
+            bound=Bound.POSITIVE,
+        ),
         _result_text("Solved at", "When the results were written (UTC)."),
         _result_text("Solved by", "Version of strutbook that wrote the results."),
         _result_text("Inputs", "Digest of the tables from which the results follow."),
@@ -164,6 +181,10 @@ JOB = Table(
             Dimension.LENGTH,
             "Largest displacement of a joint in a service combination.",
         ),
+        _result("Deflection over limit", None, "Largest displacement over the deflection limit; above 1 fails."),
+        _result("Largest utilisation", None, "Largest force over capacity of a member; above 1 fails."),
+        _result_text("Governing member", "Member with the largest utilisation."),
+        _result("Total mass", Dimension.MASS, "Mass of all members, without connections."),
     ),
     labels=True,
 )
@@ -193,8 +214,18 @@ MEMBERS = Table(
         _name("From", "Joint at one end.", "Joints"),
         _name("To", "Joint at the other end.", "Joints"),
         _text("Group", "What the member is, in your own words (top chord, diagonal)."),
-        _name("Section", "Section of the member, from the sheet Sections.", "Sections", required=False),
-        _name("Material", "Material of the member, from the sheet Materials.", "Materials", required=False),
+        _name(
+            "Section",
+            "Section of the member: a name from the sheet Sections, or a designation such as SHS 100x100x5.",
+            "Sections",
+            required=False,
+        ),
+        _name(
+            "Material",
+            "Material of the member: a name from the sheet Materials, or a grade such as S355.",
+            "Materials",
+            required=False,
+        ),
         _number(
             "Area",
             Dimension.AREA,
@@ -208,11 +239,58 @@ MEMBERS = Table(
             bound=Bound.POSITIVE,
         ),
         _number("Misfit", Dimension.LENGTH, "How much longer than its place the member was made (+ too long)."),
+        Column(
+            "Takes",
+            Kind.CHOICE,
+            "Force that the member can carry; it goes slack under the other. Blank is both.",
+            choices=("both", "tension", "compression"),
+        ),
+        _number(
+            "K in",
+            None,
+            "Buckling length over length for buckling in the plane of the truss (about the section's axis y); "
+            "blank is 1.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "K out",
+            None,
+            "Buckling length over length for buckling out of the plane (about the section's axis z); blank is 1.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Buckling length in",
+            Dimension.LENGTH,
+            "Buckling length in the plane of the truss; it goes before K in.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Buckling length out",
+            Dimension.LENGTH,
+            "Buckling length out of the plane of the truss; it goes before K out.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Net area", Dimension.AREA, "Area less holes at the connections; blank is no holes.", bound=Bound.POSITIVE
+        ),
+        _number(
+            "Shear lag",
+            None,
+            "Part of the net area that is effective where not all of the section is connected; blank is 1.",
+            bound=Bound.POSITIVE,
+        ),
+        _text("Standard", "Standard for this member; blank is that of the sheet Job."),
         _result("Length", Dimension.LENGTH, "Distance between the joints."),
         _result("Tension", Dimension.FORCE, "Largest tension over the strength combinations."),
         _result_text("Tension in", "Combination with the largest tension."),
         _result("Compression", Dimension.FORCE, "Largest compression over the strength combinations, negative."),
         _result_text("Compression in", "Combination with the largest compression."),
+        _result("Tension capacity", Dimension.FORCE, "Design capacity in tension."),
+        _result("Compression capacity", Dimension.FORCE, "Design capacity in compression."),
+        _result("Slenderness", None, "Governing slenderness in compression."),
+        _result("Utilisation", None, "Largest force over capacity in a strength combination; above 1 fails."),
+        _result_text("Governed by", "Clause and combination of the utilisation."),
+        _result_text("Verdict", "Whether the member passes the checks listed, fails, or was not checked and why."),
     ),
     required=True,
 )
@@ -333,7 +411,32 @@ SECTIONS = Table(
     "Cross-sections that members name.",
     (
         _name("Section", "Name of the section.", key=True),
-        _number("Area", Dimension.AREA, "Cross-section area.", required=True, bound=Bound.POSITIVE),
+        _text("Designation", "Designation of a standard section, where the name of the row is not one."),
+        _number(
+            "Area", Dimension.AREA, "Cross-section area; blank takes that of the designation.", bound=Bound.POSITIVE
+        ),
+        _number(
+            "Radius y",
+            Dimension.LENGTH,
+            "Radius of gyration about y, for buckling in the plane of the truss; blank takes the designation's.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Radius z",
+            Dimension.LENGTH,
+            "Radius of gyration about z, for buckling out of the plane; blank takes the designation's.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
+            "Radius min",
+            Dimension.LENGTH,
+            "Smallest radius of gyration; blank takes the designation's, or the smaller of the other two.",
+            bound=Bound.POSITIVE,
+        ),
+        _result("Area used", Dimension.AREA, "Area that the calculation used."),
+        _result("Radius y used", Dimension.LENGTH, "Radius about y that the calculation used."),
+        _result("Radius z used", Dimension.LENGTH, "Radius about z that the calculation used."),
+        _result("Radius min used", Dimension.LENGTH, "Smallest radius that the calculation used."),
     ),
 )
 
@@ -342,7 +445,16 @@ MATERIALS = Table(
     "Materials that members name.",
     (
         _name("Material", "Name of the material.", key=True),
-        _number("E", Dimension.STRESS, "Modulus of elasticity.", required=True, bound=Bound.POSITIVE),
+        _number(
+            "E",
+            Dimension.STRESS,
+            "Modulus of elasticity; blank takes that of the grade of this name.",
+            bound=Bound.POSITIVE,
+        ),
+        _number("Yield", Dimension.STRESS, "Yield strength; blank takes that of the grade.", bound=Bound.POSITIVE),
+        _number(
+            "Ultimate", Dimension.STRESS, "Ultimate strength; blank takes that of the grade.", bound=Bound.POSITIVE
+        ),
         _number("Density", Dimension.DENSITY, "Mass per volume; needed for self weight.", bound=Bound.NOT_NEGATIVE),
         _number("Expansion", Dimension.EXPANSION, "Thermal expansion; needed for temperature changes."),
     ),

@@ -22,6 +22,7 @@ class Dimension(Enum):
     SPRING = ("a force per length", "N/m", ("kN/mm", "kN/m", "kip/in"))
     TEMPERATURE = ("a temperature difference", "K", ("K", "degC", "degF"))
     DENSITY = ("a mass per volume", "kg/m3", ("kg/m3", "lb/ft3"))
+    MASS = ("a mass", "kg", ("kg", "t", "lb"))
     EXPANSION = ("a strain per temperature", "1/K", ("1/K", "1e-6/K", "1/degF"))
 
     def __init__(self, words: str, si_unit: str, suggested: tuple[str, ...]) -> None:
@@ -97,6 +98,7 @@ _FACTORS: dict[Dimension, dict[str, float]] = {
         "pcf": _POUND / _FOOT**3,
         "lb/in3": _POUND / _INCH**3,
     },
+    Dimension.MASS: {"kg": 1.0, "t": 1e3, "lb": _POUND, "lbs": _POUND, "kip": 1e3 * _POUND},
     Dimension.EXPANSION: {
         "1/K": 1.0,
         "1/degC": 1.0,

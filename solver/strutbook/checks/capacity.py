@@ -6,8 +6,8 @@ from dataclasses import dataclass, field
 
 import numpy as np
 
-from strutbook.arrays import FloatArray, IntArray
-from strutbook.sections.section import Section
+from strutbook.arrays import BoolArray, FloatArray, IntArray
+from strutbook.sections.section import Section, Shape
 
 
 @dataclass(frozen=True, eq=False)
@@ -32,6 +32,10 @@ class MembersToCheck:
     def of_sections(self, name: str) -> FloatArray:
         """(members,) property of the section of each member, by the name of the attribute."""
         return np.array([getattr(section, name) for section in self.sections], dtype=np.float64)[self.section]
+
+    def having(self, *shapes: Shape) -> BoolArray:
+        """(members,) whether the section of each member is of one of these shapes."""
+        return np.array([section.shape in shapes for section in self.sections], dtype=np.bool_)[self.section]
 
     def dimension(self, name: str) -> FloatArray:
         """(members,) dimension of the section of each member, NaN where its shape has none of that name."""
@@ -77,6 +81,8 @@ class Capacities:
     #: member -> why it was not checked in tension or compression; the verdict says it
     tension_not_checked: dict[int, str] = field(default_factory=dict)
     compression_not_checked: dict[int, str] = field(default_factory=dict)
+    #: member -> what the capacity takes for granted; the verdict says it
+    assumptions: dict[int, str] = field(default_factory=dict)
     #: (members,) largest slenderness that the standard recommends in compression and in tension; NaN for none
     slenderness_limit: FloatArray | None = None
     tension_slenderness_limit: FloatArray | None = None

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from enum import StrEnum
 from math import nan, sqrt
+
+from strutbook.errors import StrutbookError
 
 
 class Shape(StrEnum):
@@ -35,6 +37,31 @@ class Product(StrEnum):
     UNKNOWN = "unknown"
 
 
+#: kg/m³ (EN 1991-1-1 table A.4, and the product standards of sections)
+STEEL_DENSITY = 7850.0
+
+
+class UnknownSection(StrutbookError):
+    """A designation that names no section, or dimensions that make none."""
+
+
+def steel_mass(area: float) -> float:
+    """Mass of a steel section in kg/m from its area in m²."""
+    return STEEL_DENSITY * area
+
+
+def checked(name: str, fits: bool, expected: str) -> None:
+    """Refuse dimensions that make no section.
+
+    Raises
+    ------
+    UnknownSection
+        With a sentence, when they do not fit.
+    """
+    if not fits:
+        raise UnknownSection(f"the dimensions of {name} make no section; expected {expected}.")
+
+
 @dataclass(frozen=True)
 class Section:
     """A cross-section in SI units.
@@ -58,12 +85,22 @@ class Section:
     mass: float
     #: overall dimensions, m; by name: depth, width, web, flange, wall, leg, short_leg, gap, root_radius ...
     dimensions: dict[str, float] = field(default_factory=dict)
+    #: buckling curve of EN 1993-1-1 table 6.2, where the user states it
+    buckling_curve: str = ""
     #: St. Venant torsion constant m⁴ and warping constant m⁶
     torsion_constant: float = nan
     warping_constant: float = nan
     #: m from the centroid to the shear centre along y and z
     shear_centre_y: float = 0.0
     shear_centre_z: float = 0.0
+
+    def with_mass(self, mass: float) -> Section:
+        """The same section with another mass in kg/m."""
+        return replace(self, mass=mass)
+
+    def with_smallest_radius(self, radius: float) -> Section:
+        """The same section with the smallest radius of gyration, m, that its table prints."""
+        return replace(self, second_moment_min=self.area * radius**2)
 
     @property
     def radius_y(self) -> float:

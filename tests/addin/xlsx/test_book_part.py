@@ -6,7 +6,7 @@ import re
 
 import pytest
 
-from strutbook_addin.xlsx import UnreadableWorkbook
+from strutbook_addin.xlsx import UnreadableWorkbook, markup
 from strutbook_addin.xlsx.package import Package
 
 CELLS = '<row r="1"><c r="A1"><v>7</v></c></row>'
@@ -76,6 +76,16 @@ def test_two_sheets_with_one_part_are_refused(book) -> None:
 def test_part_that_is_no_xml_is_refused(book, part: str) -> None:
     book.parts[part] = book.parts[part][:-1]
     assert f"the part {part} is damaged" in refusal(book)
+
+
+@pytest.mark.parametrize("part", ["xl/workbook.xml", "_rels/.rels", "xl/styles.xml"])
+def test_description_larger_than_any_is_refused(book, monkeypatch: pytest.MonkeyPatch, part: str) -> None:
+    book.rows('<row r="1"><c r="A1" s="1"><v>7</v></c></row>')
+    book.relate("rId9", "styles", "styles.xml", "<styleSheet/>")
+    monkeypatch.setattr(markup, "TREE_LIMIT", 5_000)
+    assert book.read() == [[7.0]]
+    book.parts[part] = str(book.parts[part]) + " " * 5_000
+    assert f"the part {part} holds " in refusal(book)
 
 
 @pytest.mark.parametrize("encoding", ["no-such-thing", "utf-7", "hex"])

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 
-from strutbook_addin.xlsx import UnreadableWorkbook
+from strutbook_addin.xlsx import UnreadableWorkbook, scanning
 
 MAIN = "http://schemas.openxmlformats.org/spreadsheetml/2006/main"
 SHEET = "xl/worksheets/sheet1.xml"
@@ -30,8 +30,9 @@ def refusal(book) -> str:
         ('<row r="1"><c r="A1"/><c r="A1"/></row>', "the cell A1 is out of order"),
         ('<row r="1"><c r="A2"/></row>', "the cell A2 is out of order"),
         ('<row r="1"><c r="XFE1"/></row>', "the cell XFE1 lies outside of any sheet"),
-        ('<row r="1"><c r="XFD1"/><c r="XFE1"/></row>', "goes on past the last column"),
-        ('<row r="1"><c r="XFD1"/><c/></row>', "goes on past the last column"),
+        ('<row r="1"><c r="XFD1"/><c r="XFE1"/></row>', "the cell XFE1 lies outside of any sheet"),
+        ('<row r="1"><c r="XFD1"/><c/></row>', "lies outside of any sheet"),
+        ("<c><v>1</v></c>", "lies outside of any sheet"),
         (f'<row r="1"><c r="{"A" * 100_000}1"/></row>', "there is no column AAAAAAAAA"),
         ('<row r="1"><c r="11"/></row>', "the cell 11 is out of order"),
         ('<row r="1"><c r="$A$1"/></row>', "out of order"),
@@ -65,6 +66,24 @@ def test_sheet_without_sheet_data_is_refused(book) -> None:
 def test_absurd_merged_area_is_refused(book) -> None:
     book.sheet('<sheetData/><mergeCells><mergeCell ref="A1:XFD1048576"/></mergeCells>')
     assert "merges more than 1,000,000 cells" in refusal(book)
+
+
+def test_absurd_number_of_merged_areas_is_refused(book, monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(scanning, "AREA_LIMIT", 8)
+    book.sheet("<sheetData/><mergeCells>" + '<mergeCell ref="A1:B2"/>' * 3 + "</mergeCells>")
+    assert "merges more than 8 cells" in refusal(book)
+
+
+def test_absurd_number_of_cells_is_refused(book, monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(scanning, "CELL_LIMIT", 8)
+    assert len(book.rows("<row>" + "<c><v>1</v></c>" * 8 + "</row>").read()[0]) == 8
+    assert "holds more than 8 cells" in refusal(book.rows("<row><c/><c/><c/></row>" * 3))
+
+
+def test_text_in_runs_without_end_is_refused(book) -> None:
+    runs = f"<r><t>{'long ' * 5000}</t></r>" * 9
+    book.rows(f'<row r="1"><c r="A1" t="inlineStr"><is>{runs}</is></c></row>')
+    assert "a text is longer than any cell can hold" in refusal(book)
 
 
 def test_absurd_array_formula_is_refused(book) -> None:

@@ -1,0 +1,58 @@
+"""Yield and ultimate strength of every member, by its material and the thickness of its section."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from strutbook.arrays import FloatArray, IntArray
+from strutbook.checks.capacity import MembersToCheck
+from strutbook.materials.material import Material, Substance
+from strutbook.sections.section import Section
+
+#: Dimensions that are thicknesses of parts.
+_PARTS = ("flange", "web", "wall", "thickness")
+
+
+@dataclass(frozen=True, eq=False)
+class Strengths:
+    """Strengths of steel members; NaN where the material gives none, and why."""
+
+    #: (members,) Pa
+    yield_strength: FloatArray
+    ultimate_strength: FloatArray
+    elastic_modulus: FloatArray
+    #: member -> why it has no strength
+    missing: dict[int, str]
+
+
+def steel_strengths(members: MembersToCheck, materials: tuple[Material, ...], material: IntArray) -> Strengths:
+    """Strengths of members of steel; any other material, or none, is missing."""
+    pairs: dict[tuple[int, int], tuple[float, float, float] | str] = {}
+    rows = np.full((len(members.section), 3), np.nan)
+    missing: dict[int, str] = {}
+    for member, pair in enumerate(zip(members.section.tolist(), material.tolist(), strict=True)):
+        if pair not in pairs:
+            pairs[pair] = _strength(members.sections[pair[0]], None if pair[1] < 0 else materials[pair[1]])
+        found = pairs[pair]
+        if isinstance(found, str):
+            missing[member] = found
+        else:
+            rows[member] = found
+    return Strengths(rows[:, 0], rows[:, 1], rows[:, 2], missing)
+
+
+def _strength(section: Section, material: Material | None) -> tuple[float, float, float] | str:
+    if material is None:
+        return "no material is named"
+    if material.substance is not Substance.STEEL:
+        return f"{material.name} is not a steel, for which this standard is written"
+    if not material.strengths:
+        return f"no yield strength of {material.name} is given"
+    thickness = max((section.dimensions.get(part, 0.0) for part in _PARTS), default=0.0)
+    try:
+        step = material.strength(thickness)
+    except ValueError as too_thick:
+        return str(too_thick)
+    return step.yield_strength, step.ultimate_strength, material.elastic_modulus
