@@ -13,11 +13,11 @@ from strutbook_addin.xlsx.markup import (
     children,
     local_name,
     parse,
-    plain_text,
 )
 from strutbook_addin.xlsx.number_formats import Shown, date_styles
 from strutbook_addin.xlsx.package import Package
 from strutbook_addin.xlsx.relationships import Relationship, relationships_of
+from strutbook_addin.xlsx.shared_texts import shared_texts
 
 
 @dataclass(frozen=True, eq=False)
@@ -67,7 +67,7 @@ class BookPart:
         part = self.related("sharedStrings")
         if part is None:
             return []
-        return [plain_text(rich_text(item)) for item in parse(self.package.read(part), part)]
+        return shared_texts(self.package.read(part), part)
 
     @cached_property
     def date_styles(self) -> dict[str, Shown]:
@@ -122,18 +122,6 @@ def _check_sheets(names: list[str], sheets: dict[str, str], package: Package) ->
             "the file holds two sheets that share their cells. "
             "Open it in your spreadsheet program, let it repair the file, and save it again."
         )
-
-
-def rich_text(item: ET.Element) -> str:
-    """Text of a shared or inline string: its runs one after the other, without phonetic readings."""
-    pieces: list[str] = []
-    for element in item:
-        name = local_name(element.tag)
-        if name == "t":
-            pieces.append(element.text or "")
-        elif name == "r":
-            pieces.extend(text.text or "" for text in children(element, "t"))
-    return "".join(pieces)
 
 
 def _kind(package: Package) -> str:

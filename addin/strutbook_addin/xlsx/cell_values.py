@@ -9,10 +9,7 @@ from html import escape
 from strutbook_addin.sheets import CellValue, ErrorValue, Formula, Written, cell_name
 from strutbook_addin.xlsx.book_part import BookPart
 from strutbook_addin.xlsx.markup import damaged, plain_text, text_markup
-from strutbook_addin.xlsx.sheet_part import Cell, SheetPart
-
-#: Longest text of a cell; a spreadsheet program would call a workbook with a longer one damaged.
-TEXT_LIMIT = 32_767
+from strutbook_addin.xlsx.sheet_part import TEXT_LIMIT, Cell, SheetPart
 
 
 def stored_values(part: SheetPart, book: BookPart) -> dict[tuple[int, int], CellValue]:

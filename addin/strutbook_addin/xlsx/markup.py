@@ -21,6 +21,9 @@ RELATIONSHIP_NAMESPACES = (
     "http://purl.oclc.org/ooxml/officeDocument/relationships",
 )
 
+#: Largest part of which a tree is made.
+TREE_LIMIT = 32 << 20
+
 _DECLARED_ENCODING = re.compile(rb"""^<\?xml[^>]*?encoding\s*=\s*["']([A-Za-z0-9._-]+)["'][^>]*\?>""")
 #: How a part in UTF-16 begins, with a byte order mark or without.
 _UTF_16 = (
@@ -55,8 +58,9 @@ def parse(data: bytes, part: str) -> ET.Element:
     Raises
     ------
     UnreadableWorkbook
-        When it is not XML, or declares a document type.
+        When it is not XML, declares a document type, or is too large to be one of these parts.
     """
+    check_small(data, part)
     builder = _NoDoctype()
     builder.part = part
     parser = ET.XMLParser(target=builder)  # noqa: S314 - the builder refuses every document type
@@ -67,6 +71,14 @@ def parse(data: bytes, part: str) -> ET.Element:
         # The latter two say that the declared encoding is unknown, or is none for XML.
         raise damaged(part, error) from error
     return root
+
+
+def check_small(data: bytes, part: str) -> None:
+    """Refuse a part of which a tree would fill the memory; parts that describe the workbook are small."""
+    if len(data) > TREE_LIMIT:
+        raise UnreadableWorkbook(
+            f"the part {part} holds {len(data):,} bytes; at most {TREE_LIMIT:,} are read of a part of its kind."
+        )
 
 
 def damaged(part: str, error: Exception) -> UnreadableWorkbook:

@@ -14,6 +14,7 @@ from strutbook_addin.xlsx.markup import (
     MAIN_NAMESPACES,
     RELATIONSHIP_NAMESPACES,
     as_utf8,
+    check_small,
     damaged,
     element_end,
     local_name,
@@ -44,6 +45,7 @@ class Element:
 
 def elements_of(data: bytes, part: str) -> Element:
     """Tree of the places of all elements of a part in UTF-8."""
+    check_small(data, part)
     root = Element("", {}, 0)
     path = [root]
     parser = expat.ParserCreate("utf-8")

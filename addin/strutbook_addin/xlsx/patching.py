@@ -112,7 +112,7 @@ def _opening_changes(
 ) -> Iterator[_Change]:
     """The start tag of a row that gets new cells: its spans grow, and an empty element opens."""
     new = opening
-    ends = re.split("[: ]", element.attributes.get("spans", "").strip())
+    ends = re.split("[: ]", element.spans.strip())
     # Spans only tell readers how many cells to expect; those that make no sense stay as they are.
     if all(end.isdecimal() for end in ends):
         columns = [first + 1, last + 1, *map(int, ends)]
@@ -167,9 +167,8 @@ def _new_cells(sheet: SheetPart, row: int, values: Mapping[int, Written]) -> Ite
 def _new_cell(sheet: SheetPart, row: int, column: int, value: Written) -> bytes:
     """A cell that was not there takes the format of its row, or else of its column."""
     element = sheet.rows.get(row)
-    if element is not None and element.attributes.get("customFormat") in ("1", "true"):
-        style = element.attributes.get("s", "0")
-    else:
+    style = element.style if element is not None else ""
+    if not style:
         styles = (style for first, last, style in sheet.column_styles if first <= column <= last)
         style = str(next(styles, 0))
     return markup(row, column, value, "" if style == "0" else style, sheet.prefix)

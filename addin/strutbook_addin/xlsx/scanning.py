@@ -14,10 +14,22 @@ from strutbook_addin.sheets import column_letters
 from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.errors import UnreadableWorkbook
 from strutbook_addin.xlsx.markup import MAIN_NAMESPACES, as_utf8, damaged
-from strutbook_addin.xlsx.sheet_part import COLUMNS, ROWS, Cell, Row, SheetPart, area_of, column_number
+from strutbook_addin.xlsx.sheet_part import (
+    COLUMNS,
+    ROWS,
+    TEXT_LIMIT,
+    Area,
+    Cell,
+    Row,
+    SheetPart,
+    area_of,
+    column_number,
+)
 
 #: Most cells under merged areas and array formulas that are looked at in a sheet.
 AREA_LIMIT = 1_000_000
+#: Most cells, blank ones with a format included.
+CELL_LIMIT = 5_000_000
 
 
 def scan(data: bytes, part: str) -> SheetPart:
@@ -39,11 +51,6 @@ def scan(data: bytes, part: str) -> SheetPart:
         raise damaged(part, error) from error
     if sheet.start < 0:
         raise UnreadableWorkbook(f"the part {part} holds no sheet data, so no cells can be read from it.")
-    if sum(area.cells for area in sheet.merged + sheet.arrays) > AREA_LIMIT:
-        raise UnreadableWorkbook(
-            f"the part {part} merges more than {AREA_LIMIT:,} cells (or fills them with one array formula). "
-            "Undo that for cells that hold nothing."
-        )
     return sheet
 
 
@@ -65,6 +72,7 @@ class _Scanner:
     def __init__(self, sheet: SheetPart, parser: expat.XMLParserType) -> None:
         self._sheet = sheet
         self._parser = parser
+        self._area = 0
 
     def attach(self) -> None:
         """Take the events from the first element on."""
@@ -116,6 +124,8 @@ class _Scanner:
                 # Nearly every cell stands right beside the one before it.
                 if reference is not None and reference != column_letters(column) + row_text:
                     column = self._column_after(column, reference, row_text)
+                if column >= COLUMNS or row < 0:
+                    raise ValueError(f"the cell {reference or ''} lies outside of any sheet")
                 cell = cells[row, column] = Cell(
                     parser.CurrentByteIndex, attributes.get("t", "n"), attributes.get("s", "")
                 )
@@ -134,7 +144,8 @@ class _Scanner:
                 if not row < number < ROWS:
                     raise ValueError(f"the row {row_text} is out of order")
                 row, column = number, -1
-                sheet.rows[row] = Row(parser.CurrentByteIndex, attributes)
+                style = attributes.get("s", "") if attributes.get("customFormat") in ("1", "true") else ""
+                sheet.rows[row] = Row(parser.CurrentByteIndex, attributes.get("spans", ""), style)
 
         def end(name: str) -> None:
             nonlocal cell, phonetic
@@ -144,7 +155,7 @@ class _Scanner:
                     cell = None
                 elif name == v_tag or (name == t_tag and not phonetic):
                     text = "".join(texts)
-                    cell.value = text if cell.value is None else cell.value + text
+                    cell.value = text if cell.value is None else self._joined(cell.value, text)
                     if cell.formula is not None:
                         cell.stored = (cell.stored[0], parser.CurrentByteIndex)
                 elif name == f_tag:
@@ -153,8 +164,11 @@ class _Scanner:
                 elif name == phonetic_tag:
                     phonetic = False
             elif name == row_tag:
-                if column >= COLUMNS:
-                    raise ValueError(f"the row {row_text} goes on past the last column of any sheet")
+                if len(cells) > CELL_LIMIT:
+                    raise UnreadableWorkbook(
+                        f"the part {sheet.name} holds more than {CELL_LIMIT:,} cells. "
+                        "Delete what stands outside of the tables, formats included."
+                    )
                 sheet.rows[row].close = parser.CurrentByteIndex
             elif name == data_tag:
                 sheet.close = parser.CurrentByteIndex
@@ -165,27 +179,42 @@ class _Scanner:
         parser.StartElementHandler = start_outside
 
     @staticmethod
+    def _joined(text: str, more: str) -> str:
+        """Text of a cell with one more run; runs without end would take a time that grows with its square."""
+        if len(text) > 2 * TEXT_LIMIT:
+            raise ValueError("a text is longer than any cell can hold")
+        return text + more
+
+    @staticmethod
     def _column_after(least: int, reference: str, row_text: str) -> int:
         """Column of a cell that leaves some out; it must stand in the row around it."""
         letters = reference.rstrip("0123456789")
         column = column_number(letters)
         if column < least or reference[len(letters) :] != row_text:
             raise ValueError(f"the cell {reference} is out of order")
-        if column >= COLUMNS:
-            raise ValueError(f"the cell {reference} lies outside of any sheet")
         return column
 
     def _formula(self, attributes: dict[str, str], place: tuple[int, int]) -> None:
         kind, shared = attributes.get("t", "normal"), attributes.get("si", "")
         if kind in ("array", "dataTable") and "ref" in attributes:
-            self._sheet.arrays.append(area_of(attributes["ref"]))
+            self._take_area(self._sheet.arrays, attributes["ref"])
         elif kind == "shared" and "ref" in attributes:
             self._sheet.shared_masters[place] = shared
         elif kind == "shared":
             self._sheet.shared_users.add(shared)
 
+    def _take_area(self, areas: list[Area], reference: str) -> None:
+        area = area_of(reference)
+        areas.append(area)
+        self._area += area.cells
+        if self._area > AREA_LIMIT:
+            raise UnreadableWorkbook(
+                f"the part {self._sheet.name} merges more than {AREA_LIMIT:,} cells "
+                "(or fills them with one array formula). Undo that for cells that hold nothing."
+            )
+
     def _merge(self, attributes: dict[str, str]) -> None:
-        self._sheet.merged.append(area_of(attributes["ref"]))
+        self._take_area(self._sheet.merged, attributes["ref"])
 
     def _column(self, attributes: dict[str, str]) -> None:
         if "style" in attributes:

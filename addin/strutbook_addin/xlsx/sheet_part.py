@@ -7,6 +7,8 @@ from dataclasses import dataclass, field
 from functools import cache
 
 ROWS, COLUMNS = 1 << 20, 1 << 14
+#: Longest text of a cell; a spreadsheet program would call a workbook with a longer one damaged.
+TEXT_LIMIT = 32_767
 
 _REFERENCE = re.compile(r"\$?([A-Za-z]{1,3})\$?([0-9]{1,7})")
 
@@ -36,12 +38,13 @@ class Cell:
         )
 
 
-@dataclass
+@dataclass(slots=True)
 class Row:
     """One row element."""
 
     start: int  #: byte where its tag begins
-    attributes: dict[str, str]
+    spans: str  #: columns in which to expect cells, as it is written
+    style: str  #: format of new cells, empty where their columns have it
     close: int = 0  #: byte where its end tag begins; for an empty element, the byte after it
 
 
