@@ -71,7 +71,8 @@ class OfflineWorkbook:
         edits = self._edits.get(sheet)
         if edits:
             written = {place: value.value if isinstance(value, Formula) else value for place, value in edits.items()}
-            values = dict(sorted((values | written).items(), key=itemgetter(0)))
+            merged = sorted((values | written).items(), key=itemgetter(0))
+            values = {place: value for place, value in merged if value is not None}
         return _grid(values, sheet)
 
     def write(self, sheet: str, row: int, column: int, values: Sequence[Sequence[Written]]) -> list[Refusal]:

@@ -42,7 +42,9 @@ def test_edits_are_read_before_they_are_saved(solved) -> None:
     workbook = OfflineWorkbook.open(solved.path)
     workbook.write("Joints", 1, 0, [["Z", None, 7.5]])
     workbook.write("New", 1, 1, [["x"]])
+    workbook.clear("Joints", 3, 0, 1, 20)
     assert workbook.read("Joints")[1][:3] == ["Z", None, 7.5]
+    assert len(workbook.read("Joints")) == 3
     assert workbook.read("New") == [[], [None, "x"]]
 
 
