@@ -8,7 +8,7 @@ from pathlib import Path
 import pytest
 
 from strutbook_addin.command_line import EXIT_STATUSES, VERBS
-from strutbook_addin.run import CAUTION, NOT_CHECKED
+from strutbook_addin.reporting import CAUTION, NOT_CHECKED
 from strutbook_addin.tables.reference import written_into
 from strutbook_templates import new_workbook, shape_names
 

@@ -3,9 +3,13 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from strutbook_addin.findings import Finding, Level
 from strutbook_addin.results import Results
+
+if TYPE_CHECKING:
+    from strutbook_addin.member_checks import CheckedMembers
 
 
 @dataclass(frozen=True, eq=False)
@@ -15,6 +19,7 @@ class Outcome:
     findings: tuple[Finding, ...]
     digest: str  #: of the inputs
     results: Results | None
+    checked: CheckedMembers | None = None  #: None where no standard was asked for
 
     @property
     def exit_status(self) -> int:
@@ -36,6 +41,11 @@ class Outcome:
         kind = f"statically indeterminate to degree {degree}" if degree else "statically determinate"
         looks = self.count(Level.FAIL, Level.LOOK)
         remarks = f"; {_counted(looks, 'finding')} to look at" if looks else ""
+        if self.checked is not None:
+            fails = int(self.checked.fails.sum())
+            unchecked = len(self.checked.unchecked)
+            not_all = f", {unchecked} not checked" if unchecked else ""
+            remarks = f"; {_counted(fails, 'member')} fail{'s' * (fails == 1)}{not_all}{remarks}"
         return (
             f"Solved: {_counted(len(model.geometry.joints), 'joint')}, "
             f"{_counted(len(model.geometry.members), 'member')}, "

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 import strutbook
 from strutbook_addin.model import Model
+from strutbook_addin.model.checks import largest_distance
 from strutbook_addin.tables.reading import FloatArray
 from strutbook_addin.tables.result_sheets import USES, CombinationColumn, ResultSheet
 from strutbook_addin.tables.units import Dimension, Unit
@@ -69,6 +70,22 @@ class Results:
             ResultColumn("Compression in", self._names(self.strength[forces.argmin(axis=1)], compression < 0)),
         ]
 
+    def section_columns(self, names: list[str]) -> list[ResultColumn]:
+        """Columns beside the sections: the properties that the calculation used; blank where it used none."""
+        used = {section.name: section for section in self.model.properties.sections}
+        rows = [used.get(name) for name in names]
+
+        def column(name: str, attribute: str, dimension: Dimension) -> ResultColumn:
+            values = [np.nan if section is None else getattr(section, attribute) for section in rows]
+            return ResultColumn(name, np.array(values, dtype=np.float64), dimension)
+
+        return [
+            column("Area used", "area", Dimension.AREA),
+            column("Radius y used", "radius_y", Dimension.LENGTH),
+            column("Radius z used", "radius_z", Dimension.LENGTH),
+            column("Radius min used", "radius_min", Dimension.LENGTH),
+        ]
+
     def support_columns(self, rows: int) -> list[ResultColumn]:
         """Columns beside the supports: components of what each row's directions carry together."""
         held = self.model.held
@@ -116,6 +133,19 @@ class Results:
         if self.displacements is None:
             return float("nan")
         return float(np.linalg.norm(self.displacements[:, :, self.service], axis=1).max(initial=0.0))
+
+    def deflection_over_limit(self) -> float:
+        """Largest displacement over the limit that the sheet `Job` sets; NaN where it sets none."""
+        checks, truss = self.model.checks, self.model.truss
+        if np.isnan(checks.deflection_limit):
+            return float("nan")
+        span = checks.span if not np.isnan(checks.span) else largest_distance(truss.joints[truss.supports.joint])
+        return self.largest_displacement() * checks.deflection_limit / span if span else float("nan")
+
+    def total_mass(self) -> float:
+        """Mass of all members, kg; NaN where an area or a density is not known."""
+        properties = self.model.properties
+        return float((properties.area * properties.density * self.model.truss.lengths).sum())
 
     def _by_combination(self, values: FloatArray) -> list[CombinationColumn]:
         combinations = self.model.combinations

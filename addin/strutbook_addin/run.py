@@ -11,25 +11,18 @@ from collections.abc import Callable
 import numpy as np
 
 import strutbook
+from strutbook_addin.combination_rule import with_generated_combinations
 from strutbook_addin.digest import digest
 from strutbook_addin.findings import Findings, Level
 from strutbook_addin.model import Model, build_model
 from strutbook_addin.outcome import Outcome
+from strutbook_addin.reporting import CAUTION, report_checks, report_solution, unchecked
 from strutbook_addin.results import Results, solve
 from strutbook_addin.sheets import Sheets
 from strutbook_addin.tables.reading import TableData
 from strutbook_addin.tables.schema import INPUT_TABLES
 from strutbook_addin.workbook import Workbook, read_workbook
 from strutbook_addin.writing_back import write_results
-
-#: What no run of this version checks; it stands among the findings of every run.
-NOT_CHECKED = (
-    "not checked: strength and buckling of members, deflection limits, connections, bending of members, "
-    "fatigue, fire, vibration, erection, second-order effects."
-)
-CAUTION = "For use by a competent engineer; local codes, national annexes and licensed practice govern."
-#: Largest joint residual that needs no remark.
-RESIDUAL = 1e-9
 
 
 def silent(stage: str) -> None:
@@ -54,18 +47,25 @@ def check(sheets: Sheets, tell: Callable[[str], None] = silent) -> Outcome:
 def _calculate(sheets: Sheets, tell: Callable[[str], None]) -> tuple[Outcome, Workbook]:
     findings = Findings()
     tell("reading tables")
-    workbook = read_workbook(sheets, findings)
-    results = None
+    workbook = with_generated_combinations(read_workbook(sheets, findings), findings)
+    results = checked = None
     # With every needed table there, names are checked across tables even after errors in cells.
     if all(table.sheet in workbook.tables for table in INPUT_TABLES if table.required):
-        model = build_model(workbook.tables, findings)
+        model = build_model(workbook.tables, workbook.labels, findings)
         tell("solving")
         if model is not None:
             results = _solve(model, workbook.tables, findings)
     if results is not None:
-        _report_solution(results, workbook.tables, findings)
-    findings.add(Level.NOTE, NOT_CHECKED, CAUTION)
-    return Outcome(tuple(findings), digest(workbook.tables, workbook.labels), results), workbook
+        report_solution(results, workbook.tables, findings)
+        if any(results.model.checks.standards):
+            tell("checking members")
+            from strutbook_addin.member_checks import check_members
+
+            checked = check_members(results)
+        report_checks(results, checked, workbook, findings)
+    findings.add(Level.NOTE, unchecked(results, checked), CAUTION)
+    stamp = digest(workbook.tables, workbook.labels)
+    return Outcome(tuple(findings), stamp, results, checked), workbook
 
 
 def _solve(model: Model, tables: dict[str, TableData], findings: Findings) -> Results | None:
@@ -130,33 +130,3 @@ def _report_slack_mechanism(
         f"go{'es' * (not several)} slack, and then the truss can move: {what}.",
         "Let the member take both kinds of force, or add one that takes the other kind.",
     )
-
-
-def _report_solution(results: Results, tables: dict[str, TableData], findings: Findings) -> None:
-    worst = float(results.analysis.residual.max(initial=0.0))
-    if worst > RESIDUAL:
-        findings.add(
-            Level.LOOK,
-            f"the joints balance only to {worst:.1e} of the largest load; {RESIDUAL:.0e} is usual.",
-            "The truss may be close to a mechanism; look at its stiffnesses and geometry.",
-            sheet=tables["Joints"].layout.sheet,
-        )
-    if results.slack.any():
-        members = tables["Members"]
-        first = int(results.slack.any(axis=1).argmax())
-        count = int(results.slack.any(axis=1).sum())
-        members.report(
-            findings,
-            first,
-            "Takes",
-            f"{count} member{'s go' if count > 1 else ' goes'} slack in some combination and carr"
-            f"{'y' if count > 1 else 'ies'} nothing there; combinations were solved one by one.",
-            level=Level.NOTE,
-        )
-    if results.displacements is None:
-        findings.add(
-            Level.NOTE,
-            "no member has an area and a modulus, so forces come from statics alone, without displacements.",
-            "Fill in Area and E, or Section and Material, for displacements.",
-            sheet=tables["Members"].layout.sheet,
-        )

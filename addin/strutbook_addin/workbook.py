@@ -14,6 +14,15 @@ from strutbook_addin.tables.schema import COMBINATIONS, INPUT_TABLES, JOB, TABLE
 
 
 @dataclass(frozen=True, eq=False)
+class Rows:
+    """Rows that a run fills into a sheet of inputs because the user asked for it."""
+
+    sheet: str
+    top: int  #: row of the first line, counted from zero
+    lines: Grid
+
+
+@dataclass(frozen=True, eq=False)
 class Workbook:
     """The known sheets as they were read; keys are the names that the schema gives them."""
 
@@ -21,6 +30,7 @@ class Workbook:
     grids: dict[str, Grid]
     tables: dict[str, TableData]  #: input tables whose headers were found
     labels: Labels  #: inputs of the sheet `Job`
+    filled_in: tuple[Rows, ...] = ()  #: inputs that the run makes, to be written
 
 
 def read_workbook(sheets: Sheets, findings: Findings) -> Workbook:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 from datetime import UTC, datetime
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -11,7 +12,7 @@ from strutbook_addin.findings import Finding, Findings
 from strutbook_addin.outcome import Outcome
 from strutbook_addin.picture_writing import write_picture
 from strutbook_addin.results import Results
-from strutbook_addin.sheets import LINK, Formula, Grid, Sheets, Written
+from strutbook_addin.sheets import LINK, CellValue, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
 from strutbook_addin.tables.labels import VALUES, label_rows
 from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
@@ -29,6 +30,9 @@ from strutbook_addin.tables.writing import TableWriter, cells, header_text
 from strutbook_addin.version import __version__
 from strutbook_addin.workbook import Workbook
 
+if TYPE_CHECKING:
+    from strutbook_addin.member_checks import CheckedMembers
+
 _COMBINATION_SHEETS = (FORCES, REACTIONS, DISPLACEMENTS)
 _US_UNITS = ("ft", "in", "inch", "kip", "kips", "lb", "lbs", "lbf")
 
@@ -41,16 +45,23 @@ def write_results(sheets: Sheets, outcome: Outcome, workbook: Workbook) -> Outco
     findings = Findings()
     findings.extend(list(outcome.findings))
     writer = TableWriter(sheets, default_units(workbook), findings)
+    for rows in workbook.filled_in:
+        writer.write(rows.sheet, rows.top, 0, [[_written(value) for value in line] for line in rows.lines])
     if outcome.results is None:
         _clear(writer, workbook)
     else:
-        _fill(writer, outcome.results, workbook)
+        _fill(writer, outcome.results, outcome.checked, workbook)
     write_picture(sheets, writer, outcome.results)
     outcome = replace(outcome, findings=tuple(findings))
     _write_job(writer, outcome, workbook)
     outcome = replace(outcome, findings=tuple(findings))
     _write_findings(writer, outcome.findings, workbook)
     return outcome
+
+
+def _written(value: CellValue) -> Written:
+    """A value of a row that a run fills in; it holds texts and numbers only."""
+    return value if isinstance(value, (str, int, float)) else None
 
 
 def default_units(workbook: Workbook) -> dict[Dimension, Unit]:
@@ -67,13 +78,18 @@ def default_units(workbook: Workbook) -> dict[Dimension, Unit]:
     }
 
 
-def _fill(writer: TableWriter, results: Results, workbook: Workbook) -> None:
+def _fill(writer: TableWriter, results: Results, checked: CheckedMembers | None, workbook: Workbook) -> None:
     joints, members, supports = (workbook.tables[sheet] for sheet in ("Joints", "Members", "Supports"))
-    for data, columns in (
+    member_columns = results.member_columns(joints.layout.units["x"]) + (checked.columns if checked else [])
+    filled = [
         (joints, results.joint_columns()),
-        (members, results.member_columns(joints.layout.units["x"])),
+        (members, member_columns),
         (supports, results.support_columns(supports.rows)),
-    ):
+    ]
+    if "Sections" in workbook.tables:
+        sections = workbook.tables["Sections"]
+        filled.append((sections, results.section_columns(sections.text("Section"))))
+    for data, columns in filled:
         grid = workbook.grids[data.layout.table.sheet]
         writer.clear_results(data.layout, grid, keep={column.name for column in columns})
         writer.fill(data.layout, grid, columns)
@@ -136,7 +152,7 @@ def _stamp(outcome: Outcome) -> dict[str, float | str]:
     results = outcome.results
     if results is None:
         return {"Outcome": outcome.sentence}
-    return {
+    stamp: dict[str, float | str] = {
         "Solved at": datetime.now(UTC).strftime("%Y-%m-%d %H:%M:%S UTC"),
         "Solved by": f"strutbook {__version__}",
         "Inputs": outcome.digest,
@@ -146,7 +162,15 @@ def _stamp(outcome: Outcome) -> dict[str, float | str]:
         "Largest tension": float(results.forces.max(initial=0.0)),
         "Largest compression": float(results.forces.min(initial=0.0)),
         "Largest displacement": results.largest_displacement(),
+        "Deflection over limit": results.deflection_over_limit(),
+        "Total mass": results.total_mass(),
     }
+    if outcome.checked is not None and outcome.checked.largest is not None:
+        member = outcome.checked.largest
+        stamp["Largest utilisation"] = float(outcome.checked.utilisation[member])
+        stamp["Governing member"] = results.model.geometry.members.names[member]
+    # A label that a workbook does not have is made for a value, not for the lack of one.
+    return {label: value for label, value in stamp.items() if value == value}
 
 
 def _write_findings(writer: TableWriter, findings: tuple[Finding, ...], workbook: Workbook) -> None:

@@ -11,7 +11,7 @@ import pytest
 
 from strutbook_addin import picture
 from strutbook_addin.findings import Findings
-from strutbook_addin.run import CAUTION
+from strutbook_addin.reporting import CAUTION
 from strutbook_addin.tables.headers import locate
 from strutbook_addin.tables.schema import BY_SHEET, JOB, TABLES, Bound, Kind, Role, Table, normal
 from strutbook_addin.tables.units import split_header, unit_of

@@ -6,7 +6,7 @@ from openpyxl.cell import Cell, MergedCell
 from openpyxl.comments import Comment
 from openpyxl.worksheet.worksheet import Worksheet
 
-from strutbook_addin.run import CAUTION, NOT_CHECKED
+from strutbook_addin.reporting import CAUTION, NEVER
 from strutbook_addin.tables.schema import Column, Kind, Role, Table
 from strutbook_templates import look
 from strutbook_templates.unit_systems import UnitSystem
@@ -18,7 +18,7 @@ FIRST_ROW = HEADER_ROW + 1
 LAST_ROW = FIRST_ROW + 1999
 
 #: Stands at the foot of every printed page, under the caution that stands on every sheet.
-NOT_CHECKED_LINE = f"{NOT_CHECKED[0].upper()}{NOT_CHECKED[1:]}"
+NOT_CHECKED_LINE = f"Not checked: {NEVER}. Members and deflection: as the sheet Findings says."
 
 
 def cell_at(sheet: Worksheet, row: int, column: int) -> Cell:

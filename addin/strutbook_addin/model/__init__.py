@@ -9,11 +9,13 @@ import numpy as np
 import strutbook
 from strutbook_addin.findings import Findings
 from strutbook_addin.model.actions import ActionReader
+from strutbook_addin.model.checks import Checks, read_checks
 from strutbook_addin.model.combinations import Combinations, read_cases, read_combinations
 from strutbook_addin.model.geometry import Geometry, read_geometry
 from strutbook_addin.model.properties import Properties, read_properties
 from strutbook_addin.model.references import IndexArray
 from strutbook_addin.model.supports import Held, read_supports
+from strutbook_addin.tables.labels import Labels
 from strutbook_addin.tables.reading import TableData
 
 _TAKES = {
@@ -33,11 +35,12 @@ class Model:
     properties: Properties
     takes: IndexArray  #: (members,) strutbook.Takes
     combinations: Combinations
+    checks: Checks
     truss: strutbook.Truss
     actions: strutbook.Actions
 
 
-def build_model(tables: dict[str, TableData], findings: Findings) -> Model | None:
+def build_model(tables: dict[str, TableData], labels: Labels, findings: Findings) -> Model | None:
     """Model from the tables by sheet; None (and findings that say why) when it cannot be built."""
     joints, members = tables["Joints"], tables["Members"]
     geometry = read_geometry(joints, members, findings)
@@ -54,6 +57,7 @@ def build_model(tables: dict[str, TableData], findings: Findings) -> Model | Non
         reader.add_settlements(tables["Settlements"])
     reader.add_misfits(members)
     reader.check_self_weight(members)
+    checks = read_checks(members, labels, findings)
     if findings.stopped:
         return None
     truss = strutbook.Truss(
@@ -63,4 +67,4 @@ def build_model(tables: dict[str, TableData], findings: Findings) -> Model | Non
         axial_rigidity=properties.axial,
     )
     takes = np.array([_TAKES[word] for word in members.text("Takes")], dtype=np.intp)
-    return Model(geometry, held, properties, takes, combinations, truss, reader.actions(truss))
+    return Model(geometry, held, properties, takes, combinations, checks, truss, reader.actions(truss))

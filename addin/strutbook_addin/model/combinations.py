@@ -24,6 +24,11 @@ class Cases:
     self_weight: FloatArray  #: (cases,) factor on the weight of the members
     table: TableData | None  #: the sheet `Cases`, where there is one
 
+    @property
+    def natures(self) -> tuple[str, ...]:
+        """Nature of each case, empty where none is given."""
+        return ("",) * len(self.names) if self.table is None else tuple(self.table.text("Nature"))
+
     def indices(self, table: TableData, findings: Findings) -> IndexArray:
         """Case of every row of a load table; -1 where it is not known."""
         texts = table.text("Case")
@@ -58,6 +63,7 @@ class Combinations:
     factors: FloatArray  #: (cases, combinations)
     strength: NDArray[np.bool_]  #: (combinations,) used for member forces
     service: NDArray[np.bool_]  #: (combinations,) used for displacements
+    natures: tuple[str, ...]  #: (cases,) nature of each case, empty where none is given
 
 
 def read_cases(cases: TableData | None, load_tables: list[TableData]) -> Cases:
@@ -78,7 +84,7 @@ def read_combinations(table: TableData | None, cases: Cases, findings: Findings)
     count = len(cases.names)
     if table is None or not table.rows:
         both = np.ones(count, dtype=np.bool_)
-        return Combinations(tuple(cases.names.names), np.eye(count), both, both)
+        return Combinations(tuple(cases.names.names), np.eye(count), both, both, cases.natures)
     factors = np.zeros((count, table.rows))
     used = np.zeros(count, dtype=np.bool_)
     for header, values in table.open_numbers.items():
@@ -111,4 +117,5 @@ def read_combinations(table: TableData | None, cases: Cases, findings: Findings)
         factors,
         np.array([use != "service" for use in uses], dtype=np.bool_),
         np.array([use != "strength" for use in uses], dtype=np.bool_),
+        cases.natures,
     )

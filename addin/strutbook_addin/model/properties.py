@@ -67,11 +67,6 @@ def read_properties(
     return Properties(used_sections, section, used_materials, material, area, modulus, density, expansion)
 
 
-def sections_by_row(table: TableData, findings: Findings) -> list[Section | None]:
-    """Section of every row of the sheet `Sections`; None where a finding says what is wrong."""
-    return [_section_of_row(table, row, findings) for row in range(table.rows)]
-
-
 def _own_or(own: FloatArray, index: IndexArray, values: list[float]) -> FloatArray:
     # The last entry serves the members whose index is -1.
     named = np.array([*values, np.nan])[index]
