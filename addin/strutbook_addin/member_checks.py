@@ -19,6 +19,8 @@ from strutbook_addin.tables.writing import ResultColumn
 #: Utilisation up to which a member passes: rounding must not fail what is exactly full.
 FULL = 1.0 + 1e-9
 PASSES, FAILS, NOT_CHECKED = "passes the checks listed", "fails", "not checked"
+#: Why a member under line loads is not checked.
+BENT = "line loads bend it, and bending is not checked"
 
 
 @dataclass(frozen=True, eq=False)
@@ -121,14 +123,26 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
             continue
         clause = capacities.tension_clause if pulls[place] else capacities.compression_clause
         checked.governed_by[member] = f"{capacities.clauses[clause[place]]}, {names[strength[at[place]]]}"
-        _give_verdict(checked, member, place, capacities, float(utilisation[place]), bool(in_compression[place].any()))
+        pushed, bent = bool(in_compression[place].any()), bool(model.bent[member])
+        _give_verdict(checked, member, place, capacities, float(utilisation[place]), pushed=pushed, bent=bent)
 
 
 def _give_verdict(
-    checked: CheckedMembers, member: int, place: int, capacities: Capacities, utilisation: float, pushed: bool
+    checked: CheckedMembers,
+    member: int,
+    place: int,
+    capacities: Capacities,
+    utilisation: float,
+    *,
+    pushed: bool,
+    bent: bool,
 ) -> None:
     fails = utilisation > FULL
     checked.fails[member] = fails
+    if bent and not fails:
+        _skip(checked, member, BENT)
+        checked.verdicts[member] += f"; axial force alone takes {utilisation:.2f} of its capacity"
+        return
     words = [FAILS if fails else PASSES]
     limit = capacities.slenderness_limit if pushed else capacities.tension_slenderness_limit
     if pushed and limit is not None and capacities.slenderness[place] > limit[place]:

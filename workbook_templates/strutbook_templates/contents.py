@@ -19,14 +19,14 @@ class Contents:
     system: UnitSystem
     dimension: int  #: 2 leaves out the columns that are about z
     rows: Mapping[str, Sequence[Row]]
-    job: Mapping[str, str] = field(default_factory=dict)  #: values by label of the sheet Job
+    job: Mapping[str, str | float] = field(default_factory=dict)  #: values by label of the sheet Job
     cases: Sequence[str] = ()  #: headers of the factor columns on the sheet Combinations
     truss: Truss | None = None  #: drawn on the sheet Picture before the first run
 
     @property
     def title(self) -> str:
         """Title of the job, for the head of printed pages."""
-        return self.job.get("Title", "")
+        return str(self.job.get("Title", ""))
 
     @property
     def combinations(self) -> int:

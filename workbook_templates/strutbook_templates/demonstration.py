@@ -1,7 +1,8 @@
 """The demonstration: one truss of an invented footbridge, with every table in use.
 
 Twelve panels of two metres with crossed diagonals in the eight middle ones: 53 members, eight times
-statically indeterminate, so that warming, a misfit and the order of assembly show in the forces.
+statically indeterminate, so that warming, a misfit and the order of assembly show in the forces. The chords are more
+than they need and the diagonals less, so that checks pass and fail and `strutbook size` has something to do.
 """
 
 from __future__ import annotations
@@ -69,10 +70,14 @@ def demonstration_contents() -> Contents:
         {"Case": "A", "Nature": "settlement"},
     ]
     rows["Combinations"] = list(_COMBINATIONS)
+    # The deck holds the bottom chord sideways at every joint, frames the top chord at every second one.
+    rows["Members"] = [
+        {**row, "Buckling length out": 4.0} if row["Group"] == "top chord" else row for row in rows["Members"]
+    ]
     rows["Sections"] = [
-        {"Section": "Chord", "Area": 30.0},
-        {"Section": "Post", "Area": 12.0},
-        {"Section": "Diagonal", "Area": 12.0},
+        {"Section": "Chord", "Designation": "SHS 120x120x8"},
+        {"Section": "Post", "Designation": "SHS 60x60x5"},
+        {"Section": "Diagonal", "Designation": "SHS 50x50x5"},
     ]
     rows["Materials"] = [{"Material": "S355", "E": 210000.0, "Density": 7850.0, "Expansion": 12.0}]
     return Contents(
@@ -83,6 +88,8 @@ def demonstration_contents() -> Contents:
             "Title": "Footbridge at Osterfenn lock, north truss",
             "Reference": "Demonstration (an invented bridge)",
             "Date": "2 March 2026",
+            "Standard": "EN 1993-1-1",
+            "Deflection limit": 400.0,
         },
         tuple(str(row["Case"]) for row in rows["Cases"]),
         truss,

@@ -6,6 +6,8 @@ from openpyxl.utils import get_column_letter
 from openpyxl.worksheet.datavalidation import DataValidation
 from openpyxl.worksheet.worksheet import Worksheet
 
+from strutbook.checks.registry import STANDARDS
+from strutbook.combinations import RULES
 from strutbook_addin.tables.schema import BY_SHEET, CASES, Bound, Column, Kind, Role
 from strutbook_templates.sheet_frame import FIRST_ROW, HEADER_ROW, LAST_ROW
 
@@ -38,13 +40,27 @@ def choose_cases(sheet: Worksheet, first: int, count: int) -> None:
     sheet.add_data_validation(factors)
 
 
+def choose_on_job(sheet: Worksheet, label: str, row: int) -> None:
+    """Drop-downs beside the labels of `Job` that name a standard or a rule; other spellings may be typed."""
+    choices = {"Standard": tuple(STANDARDS), "Combination rule": tuple(RULES)}
+    names = choices.get(label)
+    if names is not None:
+        rule = DataValidation(type="list", formula1='"' + ",".join(names) + '"', allow_blank=True)
+        rule.showErrorMessage = False
+        rule.add(f"B{row}")
+        sheet.add_data_validation(rule)
+
+
 def _rule(column: Column, dimension: int) -> DataValidation | None:
     if column.kind is Kind.NUMBER:
         return _number(column.bound)
     if column.kind is Kind.CHOICE:
         return _choice(column.choices)
     if column.refers_to:
-        return _names_of(column.refers_to)
+        rule = _names_of(column.refers_to)
+        # Designations of standard sections and grades of materials may be typed as well.
+        rule.showErrorMessage = column.refers_to not in {"Sections", "Materials"}
+        return rule
     if column.name == "Holds":
         rule = DataValidation(type="list", formula1=f'"{_HOLDS[dimension]}"', allow_blank=True)
         rule.showErrorMessage = False

@@ -9,6 +9,7 @@ from openpyxl.worksheet.worksheet import Worksheet
 from strutbook_addin.tables.schema import Kind, Role, Table
 from strutbook_templates import look
 from strutbook_templates.contents import Contents
+from strutbook_templates.entry_rules import choose_on_job
 from strutbook_templates.sheet_frame import FIRST_ROW, NOT_CHECKED_LINE, add_note
 from strutbook_templates.unit_systems import number_format
 
@@ -39,6 +40,7 @@ def fill_job_sheet(sheet: Worksheet, table: Table, contents: Contents, guide: Se
             sheet.row_dimensions[row].height = 27
         if mine:
             value.value = contents.job.get(column.name)
+            choose_on_job(sheet, column.name, row)
         add_note(label, column, contents.system)
     sheet.column_dimensions["A"].width = 29
     sheet.column_dimensions["B"].width = 64

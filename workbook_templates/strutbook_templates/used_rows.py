@@ -22,6 +22,12 @@ def follow_use(sheet: Worksheet, table: Table, columns: tuple[Column, ...], open
     for place, column in enumerate(columns, start=1):
         if column.role is Role.RESULT and column.name in {"Tension", "Compression"}:
             _by_sign(sheet, place, place)
+        letter = get_column_letter(place)
+        cell = f"${letter}{FIRST_ROW}"
+        if column.name == "Utilisation":
+            _add(sheet, letter, letter, FIRST_ROW, f"AND(ISNUMBER({cell}),{cell}>1)", look.NEEDS_CARE)
+        if column.name == "Verdict":
+            _add(sheet, letter, letter, FIRST_ROW, f'OR(LEFT({cell},5)="fails",LEFT({cell},3)="not")', look.NEEDS_CARE)
     opened = table.open_columns
     if opened is not None:
         made = opened.role is Role.RESULT

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 import strutbook
 from strutbook_addin.findings import Findings
@@ -34,6 +35,7 @@ class Model:
     held: Held
     properties: Properties
     takes: IndexArray  #: (members,) strutbook.Takes
+    bent: NDArray[np.bool_]  #: (members,) whether line loads bend the member
     combinations: Combinations
     checks: Checks
     truss: strutbook.Truss
@@ -67,4 +69,4 @@ def build_model(tables: dict[str, TableData], labels: Labels, findings: Findings
         axial_rigidity=properties.axial,
     )
     takes = np.array([_TAKES[word] for word in members.text("Takes")], dtype=np.intp)
-    return Model(geometry, held, properties, takes, combinations, checks, truss, reader.actions(truss))
+    return Model(geometry, held, properties, takes, reader.bent, combinations, checks, truss, reader.actions(truss))

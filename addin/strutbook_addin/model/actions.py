@@ -35,6 +35,7 @@ class ActionReader:
         self._joint_loads = np.zeros((*geometry.coordinates.shape, count))
         self._free_elongation = np.zeros((len(geometry.members), count))
         self._settlement = np.zeros((len(held.joint), count))
+        self.bent = np.zeros(len(geometry.members), dtype=np.bool_)  #: (members,) whether line loads bend them
         self._line_loads: list[tuple[_Lumping, IndexArray, IndexArray, FloatArray]] = []
         self._warmings: list[tuple[IndexArray, IndexArray, FloatArray]] = []
 
@@ -60,6 +61,7 @@ class ActionReader:
         ):
             self._line_loads.append((lump, case[rows], member[rows], intensity[rows]))
         loaded = known & (intensity != 0).any(axis=1)
+        self.bent[member[loaded]] = True
         if loaded.any():
             row = int(np.flatnonzero(loaded)[0])
             count = len(set(member[loaded].tolist()))
