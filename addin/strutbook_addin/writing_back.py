@@ -15,18 +15,22 @@ from strutbook_addin.results import Results
 from strutbook_addin.sheets import LINK, CellValue, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
 from strutbook_addin.tables.labels import VALUES, label_rows
+from strutbook_addin.tables.list_sheets import clear_list, fill_list
 from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
 from strutbook_addin.tables.schema import (
+    BILL,
     DISPLACEMENTS,
     FINDINGS,
     FORCES,
     JOB,
     REACTIONS,
+    SIZING,
+    WORKINGS,
     Column,
     Table,
 )
 from strutbook_addin.tables.units import Dimension, Unit, UnitProblem, split_header, unit_of
-from strutbook_addin.tables.writing import TableWriter, cells, header_text
+from strutbook_addin.tables.writing import ResultColumn, TableWriter, cells, header_text
 from strutbook_addin.version import __version__
 from strutbook_addin.workbook import Workbook
 
@@ -35,6 +39,10 @@ if TYPE_CHECKING:
 
 _COMBINATION_SHEETS = (FORCES, REACTIONS, DISPLACEMENTS)
 _US_UNITS = ("ft", "in", "inch", "kip", "kips", "lb", "lbs", "lbf")
+
+
+#: Label on the sheet `Job` that asks for workings.
+WORKINGS_FOR = "Workings for"
 
 
 def write_results(sheets: Sheets, outcome: Outcome, workbook: Workbook) -> Outcome:
@@ -93,6 +101,7 @@ def _fill(writer: TableWriter, results: Results, checked: CheckedMembers | None,
         grid = workbook.grids[data.layout.table.sheet]
         writer.clear_results(data.layout, grid, keep={column.name for column in columns})
         writer.fill(data.layout, grid, columns)
+    _write_lists(writer, results, checked, workbook)
     sheets = results.sheets()
     for table in _COMBINATION_SHEETS:
         layout, grid = _result_sheet(table, workbook)
@@ -108,6 +117,31 @@ def _clear(writer: TableWriter, workbook: Workbook) -> None:
         writer.clear_results(data.layout, workbook.grids[sheet])
     for table in _COMBINATION_SHEETS:
         clear_sheet(writer, *_result_sheet(table, workbook))
+    _write_lists(writer, None, None, workbook)
+
+
+def _write_lists(
+    writer: TableWriter, results: Results | None, checked: CheckedMembers | None, workbook: Workbook
+) -> None:
+    """Lists that a workbook asks for: `Bill` by having the sheet, `Workings` by a label of `Job`.
+
+    What another command listed (`Sizing`) does not follow from these inputs and goes.
+    """
+    asked = workbook.labels.texts.get(WORKINGS_FOR, "")
+    for table in (BILL, WORKINGS, SIZING):
+        columns: list[ResultColumn] = []
+        if results is not None and table is BILL and BILL.sheet in workbook.names:
+            from strutbook_addin.bill import bill_columns
+
+            columns = bill_columns(results)
+        if results is not None and checked is not None and table is WORKINGS and asked:
+            from strutbook_addin.workings import workings_columns
+
+            columns = workings_columns(results, checked, asked)
+        if columns:
+            write_list(writer, table, columns, workbook)
+        elif table.sheet in workbook.names:
+            clear_list(writer, table, workbook.names[table.sheet], workbook.grids[table.sheet])
 
 
 def _result_sheet(table: Table, workbook: Workbook) -> tuple[Layout, Grid]:
@@ -174,14 +208,18 @@ def _stamp(outcome: Outcome) -> dict[str, float | str]:
 
 
 def _write_findings(writer: TableWriter, findings: tuple[Finding, ...], workbook: Workbook) -> None:
-    layout, grid = _result_sheet(FINDINGS, workbook)
-    rows = [[finding.level.value, _link(finding, workbook), _what(finding), finding.todo] for finding in findings]
-    for place, schema in enumerate(FINDINGS.columns):
-        column = layout.columns[schema.name]
-        values: list[list[Written]] = [[schema.name], *([row[place] or None] for row in rows)]
-        writer.write(layout.sheet, layout.header_row, column, values)
-        below = layout.header_row + len(values)
-        writer.clear(layout.sheet, below, column, len(grid) - below)
+    columns = [
+        ResultColumn("Level", [finding.level.value for finding in findings]),
+        ResultColumn("Where", [_link(finding, workbook) for finding in findings]),
+        ResultColumn("What", [_what(finding) for finding in findings]),
+        ResultColumn("What to do", [finding.todo for finding in findings]),
+    ]
+    write_list(writer, FINDINGS, columns, workbook)
+
+
+def write_list(writer: TableWriter, table: Table, columns: list[ResultColumn], workbook: Workbook) -> None:
+    """Write a list onto its sheet, which is made if need be."""
+    fill_list(writer, table, workbook.names.get(table.sheet, table.sheet), workbook.grids.get(table.sheet, []), columns)
 
 
 def _what(finding: Finding) -> str:

@@ -13,7 +13,7 @@ from strutbook_addin import picture
 from strutbook_addin.findings import Findings
 from strutbook_addin.reporting import CAUTION
 from strutbook_addin.tables.headers import locate
-from strutbook_addin.tables.schema import BY_SHEET, JOB, TABLES, Bound, Kind, Role, Table, normal
+from strutbook_addin.tables.schema import BY_SHEET, JOB, TEMPLATE_TABLES, Bound, Kind, Role, Table, normal
 from strutbook_addin.tables.units import split_header, unit_of
 from strutbook_templates.generate import FOLDER, template_contents
 from strutbook_templates.saving import save_workbook
@@ -22,7 +22,10 @@ from strutbook_templates.sheet_frame import is_about_z
 TEMPLATES = list(template_contents())
 #: Tables with a header row, on every template.
 TABLES_ON_SHEETS = [
-    pytest.param(name, table, id=f"{name}-{table.sheet}") for name in TEMPLATES for table in TABLES if not table.labels
+    pytest.param(name, table, id=f"{name}-{table.sheet}")
+    for name in TEMPLATES
+    for table in TEMPLATE_TABLES
+    if not table.labels
 ]
 CHART = {"c": "http://schemas.openxmlformats.org/drawingml/2006/chart"}
 
@@ -127,7 +130,7 @@ def test_job_has_every_label_with_its_unit(built, name):
 
 @pytest.mark.parametrize("name", TEMPLATES)
 def test_sheets_stand_in_the_order_of_the_schema_with_the_picture_before_the_findings(built, name):
-    order = [table.sheet for table in TABLES]
+    order = [table.sheet for table in TEMPLATE_TABLES]
     order.insert(order.index("Findings"), picture.SHEET)
     assert built[name].names() == order
 

@@ -14,7 +14,7 @@ from openpyxl.styles import Alignment
 from openpyxl.worksheet.worksheet import Worksheet
 
 from strutbook_addin import picture
-from strutbook_addin.tables.schema import TABLES, Column, Kind, OpenColumns, Role, Table
+from strutbook_addin.tables.schema import TEMPLATE_TABLES, Column, Kind, OpenColumns, Role, Table
 from strutbook_templates import look
 from strutbook_templates.contents import Contents, Row
 from strutbook_templates.entry_rules import add_entry_rules, choose_cases
@@ -51,7 +51,7 @@ def build_workbook(contents: Contents) -> Workbook:
     workbook.remove(workbook.worksheets[0])
     # Widths of columns are counted in digits of this font.
     workbook._named_styles["Normal"].font = look.CELL_FONT  # type: ignore[attr-defined] # the stubs lack it
-    for table in TABLES:
+    for table in TEMPLATE_TABLES:
         if table.sheet == "Findings":
             fill_picture_sheet(workbook, contents)
         sheet = workbook.create_sheet(table.sheet)
@@ -67,7 +67,7 @@ def build_workbook(contents: Contents) -> Workbook:
 
 def _guide(first: Table) -> list[tuple[str, str]]:
     """All sheets but the first, with what they hold, in their order."""
-    guide = [(table.sheet, table.meaning) for table in TABLES if table is not first]
+    guide = [(table.sheet, table.meaning) for table in TEMPLATE_TABLES if table is not first]
     guide.insert(len(guide) - 1, (picture.SHEET, PICTURE_MEANING))
     return guide
 

@@ -23,6 +23,7 @@ class Geometry:
     members: Names
     coordinates: FloatArray  #: (joints, 2 or 3) m
     ends: IndexArray  #: (members, 2) joint indices
+    groups: tuple[str, ...]  #: (members,) group of each member, empty where none is given
 
     @property
     def dimensions(self) -> int:
@@ -60,7 +61,7 @@ def read_geometry(joints: TableData, members: TableData, findings: Findings) -> 
     _report_members_without_length(members, coordinates, ends, findings)
     _report_duplicate_members(members, member_names, ends, findings)
     _report_unreached_joints(joints, joint_names, ends, findings)
-    return Geometry(joint_names, member_names, coordinates, ends)
+    return Geometry(joint_names, member_names, coordinates, ends, tuple(members.text("Group")))
 
 
 def _report_empty(joints: TableData, members: TableData, findings: Findings) -> None:

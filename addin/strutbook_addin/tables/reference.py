@@ -8,15 +8,16 @@ from __future__ import annotations
 import sys
 from pathlib import Path
 
-from strutbook_addin.tables.schema import RESULT_TABLES, TABLES, Column, Kind, Table
+from strutbook_addin.tables.schema import ON_REQUEST, RESULT_TABLES, TABLES, Column, Kind, Table
 
 START, END = "<!-- tables -->", "<!-- end of tables -->"
 
 
 def reference() -> str:
     """Every table and column in Markdown."""
-    parts = [_table(table) for table in TABLES if table not in RESULT_TABLES]
-    results = "\n".join(f"| `{table.sheet}` | {table.meaning} | {_columns(table)} |" for table in RESULT_TABLES)
+    listed = (*RESULT_TABLES, *(table for table in ON_REQUEST if not table.inputs))
+    parts = [_table(table) for table in TABLES if table not in listed]
+    results = "\n".join(f"| `{table.sheet}` | {table.meaning} | {_columns(table)} |" for table in listed)
     parts.append(
         "Sheets that a run writes whole (it makes those that are missing):\n\n"
         f"| sheet | holds | columns |\n| --- | --- | --- |\n{results}\n"

@@ -156,6 +156,7 @@ JOB = Table(
             "Combination rule",
             "Rule that fills an empty sheet Combinations from the natures of the cases; blank fills nothing in.",
         ),
+        _text("Workings for", "Members whose checks are written out on the sheet Workings, or the word worst."),
         _number(
             "Deflection limit",
             None,
@@ -498,6 +499,58 @@ FINDINGS = Table(
     ),
 )
 
+STOCK = Table(
+    "Stock",
+    "Sections from which `strutbook size` chooses; without this sheet, name families on the command line.",
+    (
+        _name("Section", "Designation of a section that may be chosen."),
+        _text("Group", "Group of members for which it may be chosen; blank is any."),
+    ),
+)
+
+BILL = Table(
+    "Bill",
+    "Bill of members; a workbook that has this sheet gets it filled in.",
+    (
+        _result_text("Mark", "Group of the members."),
+        _result_text("Section", "Section of the members."),
+        _result_text("Material", "Material of the members."),
+        _result("Length", Dimension.LENGTH, "Length of each, between joints."),
+        _result("Count", None, "How many there are."),
+        _result("Mass", Dimension.MASS, "Mass of all of them, without connections."),
+    ),
+)
+
+WORKINGS = Table(
+    "Workings",
+    "Checks of the members that `Workings for` on `Job` names, clause by clause.",
+    (
+        _result_text("Member", "Member that is checked."),
+        _result_text("Clause", "Clause of the standard."),
+        _result_text("Symbol", "Symbol as the clause writes it."),
+        _result_text("Meaning", "What it is."),
+        _result("Value", None, "Its value, in the unit beside it."),
+        _result_text("Unit", "Unit of the value."),
+        _result_text("By", "Formula, where it is simple."),
+    ),
+)
+
+SIZING = Table(
+    "Sizing",
+    "What `strutbook size` chose for each group, beside what stood there.",
+    (
+        _result_text("Group", "Group of members."),
+        _result("Members", None, "How many members the group has."),
+        _result_text("Section before", "Section that stood there."),
+        _result_text("Section chosen", "Lightest section that passes."),
+        _result("Mass before", Dimension.MASS, "Mass of the group before."),
+        _result("Mass chosen", Dimension.MASS, "Mass of the group with the section that was chosen."),
+        _result("Utilisation", None, "Largest utilisation with the section that was chosen."),
+        _result_text("Governed by", "Member, clause and combination that governed."),
+        _result_text("Remark", "What an engineer should know of this group."),
+    ),
+)
+
 INPUT_TABLES = (
     JOINTS,
     MEMBERS,
@@ -511,6 +564,10 @@ INPUT_TABLES = (
     MATERIALS,
 )
 RESULT_TABLES = (FORCES, REACTIONS, DISPLACEMENTS, FINDINGS)
-#: Every table, in the order in which their sheets stand in a template.
-TABLES = (JOB, *INPUT_TABLES, *RESULT_TABLES)
+#: Tables of which the sheets are made when somebody asks for them.
+ON_REQUEST = (STOCK, BILL, WORKINGS, SIZING)
+#: Tables of a template, in the order of their sheets.
+TEMPLATE_TABLES = (JOB, *INPUT_TABLES, *RESULT_TABLES)
+#: Every table.
+TABLES = (*TEMPLATE_TABLES, *ON_REQUEST)
 BY_SHEET = {table.sheet: table for table in TABLES}

@@ -23,7 +23,7 @@ class ResultColumn:
     """One column of results, in SI units or as texts."""
 
     name: str
-    values: FloatArray | Sequence[str]
+    values: FloatArray | Sequence[Written]
     dimension: Dimension | None = None
     unit: Unit | None = None  #: of a header that the run makes, where the usual one does not suit
 
@@ -96,7 +96,7 @@ def header_text(name: str, unit: Unit | None) -> str:
     return f"{name} [{unit.text}]" if unit else name
 
 
-def cells(values: FloatArray | Sequence[str], unit: Unit | None) -> list[Written]:
+def cells(values: FloatArray | Sequence[Written], unit: Unit | None) -> list[Written]:
     """Values as they are written: in the unit of the header, without noise, nothing for NaN."""
     if not isinstance(values, np.ndarray):
         return [value or None for value in values]
