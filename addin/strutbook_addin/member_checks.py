@@ -91,16 +91,13 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
     if not len(members):
         return
     capacities = standard.check(
-        _to_check(model, members), model.properties.materials, model.properties.material[members]
+        members_to_check(model, members), model.properties.materials, model.properties.material[members]
     )
     checked.groups.append((standard, members, capacities))
     strength = results.strength
     forces = results.forces[np.ix_(members, strength)]
-    duration = _durations(model, standard)[strength]
-    with np.errstate(invalid="ignore", divide="ignore"):
-        in_tension = np.where(forces > 0, forces / capacities.tension[:, duration], 0.0)
-        in_compression = np.where(forces < 0, -forces / capacities.compression[:, duration], 0.0)
-    # A capacity that is not known makes NaN of a force that needs it, and of no other.
+    duration = load_durations(model, standard)[strength]
+    in_tension, in_compression = force_over_capacity(capacities, forces, duration)
     tension_at, compression_at = (_argmax(values) for values in (in_tension, in_compression))
     rows = np.arange(len(members))
     largest_tension, largest_compression = in_tension[rows, tension_at], in_compression[rows, compression_at]
@@ -125,6 +122,19 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
         checked.governed_by[member] = f"{capacities.clauses[clause[place]]}, {names[strength[at[place]]]}"
         pushed, bent = bool(in_compression[place].any()), bool(model.bent[member])
         _give_verdict(checked, member, place, capacities, float(utilisation[place]), pushed=pushed, bent=bent)
+
+
+def force_over_capacity(
+    capacities: Capacities, forces: FloatArray, duration: IndexArray
+) -> tuple[FloatArray, FloatArray]:
+    """(members, combinations) utilisation in tension and in compression, 0 where the force is the other one.
+
+    A capacity that is not known makes NaN of a force that needs it, and of no other.
+    """
+    with np.errstate(invalid="ignore", divide="ignore"):
+        in_tension = np.where(forces > 0, forces / capacities.tension[:, duration], 0.0)
+        in_compression = np.where(forces < 0, -forces / capacities.compression[:, duration], 0.0)
+    return in_tension, in_compression
 
 
 def _give_verdict(
@@ -170,7 +180,8 @@ def _argmax(values: FloatArray) -> IndexArray:
     return place
 
 
-def _to_check(model: Model, members: IndexArray) -> MembersToCheck:
+def members_to_check(model: Model, members: IndexArray) -> MembersToCheck:
+    """Members as a standard is asked about them; each must have a section."""
     checks, lengths = model.checks, model.truss.lengths[members]
 
     def buckling_length(given: FloatArray, factor: FloatArray) -> FloatArray:
@@ -187,7 +198,7 @@ def _to_check(model: Model, members: IndexArray) -> MembersToCheck:
     )
 
 
-def _durations(model: Model, standard: Standard) -> IndexArray:
+def load_durations(model: Model, standard: Standard) -> IndexArray:
     """(combinations,) load duration of each combination: that of its shortest action."""
     combinations = model.combinations
     if standard.duration_of_nature is None:

@@ -35,7 +35,8 @@ def unchecked(results: Results | None, checked: CheckedMembers | None) -> str:
     if checked is None:
         items.insert(0, OF_MEMBERS)
     elif checked.unchecked:
-        items.insert(0, f"{OF_MEMBERS} in {len(checked.unchecked)} of them")
+        count = len(checked.unchecked)
+        items.insert(0, f"strength and buckling of {count} member{'s' * (count > 1)}")
     return f"not checked: {', '.join(items)}."
 
 

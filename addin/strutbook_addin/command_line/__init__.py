@@ -23,6 +23,7 @@ VERBS = {
     "demo": "write the demonstration workbook, solve it and print what was found",
     "new": "start a workbook: blank, or a truss of a usual shape",
     "solve": "solve workbooks and write the results into them",
+    "size": "find the lightest sections, by group, with which everything passes",
 }
 
 

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 import strutbook
+from strutbook.sections.section import Section
 from strutbook_addin.findings import Findings
 from strutbook_addin.model.actions import ActionReader
 from strutbook_addin.model.checks import Checks, read_checks
@@ -17,7 +19,7 @@ from strutbook_addin.model.properties import Properties, read_properties
 from strutbook_addin.model.references import IndexArray
 from strutbook_addin.model.supports import Held, read_supports
 from strutbook_addin.tables.labels import Labels
-from strutbook_addin.tables.reading import TableData
+from strutbook_addin.tables.reading import FloatArray, TableData
 
 _TAKES = {
     "": strutbook.Takes.BOTH,
@@ -40,6 +42,7 @@ class Model:
     checks: Checks
     truss: strutbook.Truss
     actions: strutbook.Actions
+    self_weight: FloatArray  #: (cases,) factor on the weight of the members
 
 
 def build_model(tables: dict[str, TableData], labels: Labels, findings: Findings) -> Model | None:
@@ -69,4 +72,40 @@ def build_model(tables: dict[str, TableData], labels: Labels, findings: Findings
         axial_rigidity=properties.axial,
     )
     takes = np.array([_TAKES[word] for word in members.text("Takes")], dtype=np.intp)
-    return Model(geometry, held, properties, takes, reader.bent, combinations, checks, truss, reader.actions(truss))
+    return Model(
+        geometry,
+        held,
+        properties,
+        takes,
+        reader.bent,
+        combinations,
+        checks,
+        truss,
+        reader.actions(truss),
+        cases.self_weight,
+    )
+
+
+def with_sections(model: Model, chosen: Mapping[int, Section]) -> Model:
+    """The same model with other sections of some members; stiffness and self weight follow."""
+    before = model.properties
+    sections = [*before.sections]
+    places: dict[int, int] = {}
+    section, area = before.section.copy(), before.area.copy()
+    for member, one in chosen.items():
+        if id(one) not in places:
+            places[id(one)] = len(sections)
+            sections.append(one)
+        section[member], area[member] = places[id(one)], one.area
+    properties = replace(before, sections=tuple(sections), section=section, area=area)
+    truss = strutbook.Truss(
+        model.truss.joints, model.truss.members, model.truss.supports, axial_rigidity=properties.axial
+    )
+    actions = model.actions
+    if np.any(model.self_weight):
+        heavier = strutbook.self_weight(truss, (area - before.area) * before.density)
+        joint_loads = actions.joint_loads.copy()
+        # The last case holds the misfits and weighs nothing.
+        joint_loads[:, :, :-1] += heavier[:, :, np.newaxis] * model.self_weight
+        actions = strutbook.Actions(joint_loads, actions.free_elongation, actions.settlement)
+    return replace(model, properties=properties, truss=truss, actions=actions)
