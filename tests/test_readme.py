@@ -8,7 +8,7 @@ from pathlib import Path
 import pytest
 
 from strutbook_addin.command_line import EXIT_STATUSES, VERBS
-from strutbook_addin.reporting import CAUTION, NOT_CHECKED
+from strutbook_addin.reporting import CAUTION, NEVER, OF_MEMBERS
 from strutbook_addin.tables.reference import written_into
 from strutbook_templates import new_workbook, shape_names
 
@@ -38,7 +38,8 @@ def test_shapes_exit_statuses_and_cautions_are_those_of_the_program():
     for shape in shape_names():
         assert re.search(rf"\b{shape}\b", README), shape
     assert EXIT_STATUSES in WORDS
-    assert NOT_CHECKED.removeprefix("not checked: ").rstrip(".") in WORDS
+    assert NEVER in WORDS
+    assert OF_MEMBERS in WORDS
     assert CAUTION.partition("; ")[2].lower() in WORDS.lower()
 
 
