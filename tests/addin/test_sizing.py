@@ -27,7 +27,7 @@ def frame(triangle):
         ["AC", "A", "C", "rafter", "SHS 150x10", "S355"],
         ["BC", "B", "C", "rafter", "SHS 150x10", "S355"],
     ]
-    triangle["Loads"] = [["Joint", "Fy [kN]"], ["C", -120]]
+    triangle["Loads"] = [["Joint", "Fx [kN]", "Fy [kN]"], ["C", -120, -450]]
     return triangle
 
 
