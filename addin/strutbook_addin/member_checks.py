@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -97,22 +98,20 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
     strength = results.strength
     forces = results.forces[np.ix_(members, strength)]
     duration = load_durations(model, standard)[strength]
-    in_tension, in_compression = force_over_capacity(capacities, forces, duration)
-    tension_at, compression_at = (_argmax(values) for values in (in_tension, in_compression))
+    pulled, pushed = utilisations(capacities, forces, duration)
     rows = np.arange(len(members))
-    largest_tension, largest_compression = in_tension[rows, tension_at], in_compression[rows, compression_at]
-    pulls = ~(largest_tension < largest_compression)
-    at = np.where(pulls, tension_at, compression_at)
-    utilisation = np.where(pulls, largest_tension, largest_compression)
-    unknown = np.isnan(largest_tension) | np.isnan(largest_compression)
-    checked.tension[members] = capacities.tension[rows, duration[tension_at]]
-    checked.compression[members] = -capacities.compression[rows, duration[compression_at]]
+    pulls = ~(pulled.largest < pushed.largest)
+    at = np.where(pulls, pulled.at, pushed.at)
+    utilisation = np.where(pulls, pulled.largest, pushed.largest)
+    unknown = np.isnan(pulled.largest) | np.isnan(pushed.largest)
+    checked.tension[members] = capacities.tension[rows, duration[pulled.at]]
+    checked.compression[members] = -capacities.compression[rows, duration[pushed.at]]
     checked.slenderness[members] = capacities.slenderness
     checked.utilisation[members] = np.where(unknown, np.nan, utilisation)
     names = model.combinations.names
     for place, member in enumerate(members.tolist()):
         if unknown[place]:
-            why = _why(capacities, place, tension=bool(np.isnan(largest_tension[place])))
+            why = _why(capacities, place, tension=bool(np.isnan(pulled.largest[place])))
             _skip(checked, member, why)
             continue
         if not utilisation[place]:
@@ -120,21 +119,59 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
             continue
         clause = capacities.tension_clause if pulls[place] else capacities.compression_clause
         checked.governed_by[member] = f"{capacities.clauses[clause[place]]}, {names[strength[at[place]]]}"
-        pushed, bent = bool(in_compression[place].any()), bool(model.bent[member])
-        _give_verdict(checked, member, place, capacities, float(utilisation[place]), pushed=pushed, bent=bent)
+        is_pushed, bent = bool(pushed.largest[place] > 0), bool(model.bent[member])
+        _give_verdict(checked, member, place, capacities, float(utilisation[place]), pushed=is_pushed, bent=bent)
 
 
-def force_over_capacity(
-    capacities: Capacities, forces: FloatArray, duration: IndexArray
-) -> tuple[FloatArray, FloatArray]:
-    """(members, combinations) utilisation in tension and in compression, 0 where the force is the other one.
+@dataclass(frozen=True, eq=False)
+class Utilisation:
+    """Largest utilisation of every member by one kind of force."""
 
-    A capacity that is not known makes NaN of a force that needs it, and of no other.
+    largest: FloatArray  #: (members,) 0 without such a force, NaN where there is one and no capacity
+    at: IndexArray  #: (members,) combination
+
+
+def utilisations(capacities: Capacities, forces: FloatArray, duration: IndexArray) -> tuple[Utilisation, Utilisation]:
+    """Largest utilisation in tension and in compression.
+
+    Capacities change with the load duration only, so of all combinations of one duration the largest force governs.
+
+    Parameters
+    ----------
+    capacities : Capacities
+        Of the members.
+    forces : (members, combinations) array of float
+        N, tension positive.
+    duration : (combinations,) array of int
+        Load duration of each combination, as an index.
     """
-    with np.errstate(invalid="ignore", divide="ignore"):
-        in_tension = np.where(forces > 0, forces / capacities.tension[:, duration], 0.0)
-        in_compression = np.where(forces < 0, -forces / capacities.compression[:, duration], 0.0)
-    return in_tension, in_compression
+    return (
+        _largest(forces, capacities.tension, duration, np.argmax, 1.0),
+        _largest(forces, capacities.compression, duration, np.argmin, -1.0),
+    )
+
+
+def _largest(
+    forces: FloatArray,
+    capacity: FloatArray,
+    duration: IndexArray,
+    extreme: Callable[..., IndexArray],
+    sign: float,
+) -> Utilisation:
+    rows = np.arange(len(forces))
+    largest, at = np.full(len(forces), -1.0), np.zeros(len(forces), dtype=np.intp)
+    for one in sorted(set(duration.tolist())):
+        # With one duration for all, as for steel, no copy of the forces is made.
+        combinations = np.flatnonzero(duration == one)
+        of_duration = forces if len(combinations) == forces.shape[1] else forces[:, combinations]
+        place = extreme(of_duration, axis=1)
+        force = sign * of_duration[rows, place]
+        with np.errstate(invalid="ignore", divide="ignore"):
+            used = np.where(force > 0, force / capacity[:, one], 0.0)
+        # NaN wins: a force without a capacity leaves the member unchecked.
+        better = (used > largest) | np.isnan(used)
+        largest, at = np.where(better, used, largest), np.where(better, combinations[place], at)
+    return Utilisation(largest, at)
 
 
 def _give_verdict(
@@ -172,12 +209,6 @@ def _skip(checked: CheckedMembers, member: int, why: str) -> None:
 def _why(capacities: Capacities, place: int, *, tension: bool) -> str:
     reasons = capacities.tension_not_checked if tension else capacities.compression_not_checked
     return reasons.get(place, "the standard gives no capacity")
-
-
-def _argmax(values: FloatArray) -> IndexArray:
-    """(members,) place of the largest value, of a NaN where there is one."""
-    place: IndexArray = np.argmax(np.where(np.isnan(values), np.inf, values), axis=1)
-    return place
 
 
 def members_to_check(model: Model, members: IndexArray) -> MembersToCheck:

@@ -18,9 +18,9 @@ from strutbook_addin.member_checks import (
     FULL,
     CheckedMembers,
     check_members,
-    force_over_capacity,
     load_durations,
     members_to_check,
+    utilisations,
 )
 from strutbook_addin.model import Model, with_sections
 from strutbook_addin.model.references import IndexArray
@@ -226,14 +226,14 @@ def _pass_by(
     capacities = standard.check(tried, materials, np.tile(model.properties.material[members], count))
     forces = np.tile(results.forces[np.ix_(members, results.strength)], (count, 1))
     duration = load_durations(model, standard)[results.strength]
-    in_tension, in_compression = force_over_capacity(capacities, forces, duration)
-    used = np.maximum(in_tension, in_compression).max(axis=1, initial=0.0)
+    pulled, pushed = utilisations(capacities, forces, duration)
+    used = np.maximum(pulled.largest, pushed.largest)
     fits = used <= FULL
     if capacities.slenderness_limit is not None:
-        pushed = (forces < 0).any(axis=1)
-        fits &= ~(pushed & (capacities.slenderness > capacities.slenderness_limit))
+        fits &= ~((pushed.largest > 0) & (capacities.slenderness > capacities.slenderness_limit))
     by_candidate = (count, size_)
-    return fits.reshape(by_candidate).all(axis=1), used.reshape(by_candidate).max(axis=1)
+    passes = np.asarray(fits.reshape(by_candidate).all(axis=1))
+    return passes, used.reshape(by_candidate).max(axis=1)
 
 
 def _resized(model: Model, groups: list[_Group]) -> Model:

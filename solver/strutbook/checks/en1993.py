@@ -148,9 +148,10 @@ def capacities(
         effective, parts_steps, no_compression = _effective_area(members, f_y)
         compression, clause, slenderness, steps = _compression(members, f_y, modulus, effective, options)
     no_curve = {
-        member: f"no buckling curve is known for {members.sections[place].name}; state one on the sheet Sections"
-        for member, place in enumerate(members.section.tolist())
-        if not buckling_curves(members.sections[place], 0.0)[0]
+        int(member): f"no buckling curve is known for {one.name}; state one on the sheet Sections"
+        for place, one in enumerate(members.sections)
+        if not buckling_curves(one, 0.0)[0]
+        for member in np.flatnonzero(members.section == place)
     }
     no_compression = {**no_curve, **no_compression, **missing_radii(members), **found.missing}
     no_tension = {**no_tension, **found.missing}
@@ -324,12 +325,14 @@ def _compression(
 
 def _imperfections(members: MembersToCheck, f_y: FloatArray) -> tuple[FloatArray, FloatArray]:
     """(members,) imperfection factors for buckling about y and about z; NaN where no curve is known."""
-    known: dict[tuple[int, bool], tuple[float, float]] = {}
-    rows = np.empty((len(members.section), 2))
-    for member, place in enumerate(members.section.tolist()):
-        key = (place, bool(f_y[member] > _S460))
-        if key not in known:
-            curves = buckling_curves(members.sections[place], float(f_y[member]))
-            known[key] = tuple(IMPERFECTION.get(curve, np.nan) for curve in curves)  # type: ignore[assignment]  # two
-        rows[member] = known[key]
+    table = np.array(
+        [
+            [
+                [IMPERFECTION.get(curve, np.nan) for curve in buckling_curves(one, strength)]
+                for strength in (0.0, _S460 + 1)
+            ]
+            for one in members.sections
+        ]
+    )
+    rows = table[members.section, (f_y > _S460).astype(np.intp)]
     return rows[:, 0], rows[:, 1]

@@ -29,18 +29,19 @@ class Strengths:
 
 def steel_strengths(members: MembersToCheck, materials: tuple[Material, ...], material: IntArray) -> Strengths:
     """Strengths of members of steel; any other material, or none, is missing."""
-    pairs: dict[tuple[int, int], tuple[float, float, float] | str] = {}
-    rows = np.full((len(members.section), 3), np.nan)
+    # Members are many and pairs of section and material few.
+    pair = members.section * (len(materials) + 1) + material + 1
+    table = np.full((len(members.sections) * (len(materials) + 1), 3), np.nan)
     missing: dict[int, str] = {}
-    for member, pair in enumerate(zip(members.section.tolist(), material.tolist(), strict=True)):
-        if pair not in pairs:
-            pairs[pair] = _strength(members.sections[pair[0]], None if pair[1] < 0 else materials[pair[1]])
-        found = pairs[pair]
+    for one in sorted(set(pair.tolist())):
+        place, named = divmod(one, len(materials) + 1)
+        found = _strength(members.sections[place], materials[named - 1] if named else None)
         if isinstance(found, str):
-            missing[member] = found
+            missing.update(dict.fromkeys(np.flatnonzero(pair == one).tolist(), found))
         else:
-            rows[member] = found
-    return Strengths(rows[:, 0], rows[:, 1], rows[:, 2], missing)
+            table[one] = found
+    f_y, f_u, modulus = table[pair].T
+    return Strengths(f_y, f_u, modulus, missing)
 
 
 def _strength(section: Section, material: Material | None) -> tuple[float, float, float] | str:
