@@ -21,7 +21,7 @@ from strutbook_addin.tables.writing import ResultColumn
 FULL = 1.0 + 1e-9
 PASSES, FAILS, NOT_CHECKED = "passes the checks listed", "fails", "not checked"
 #: Why a member under line loads is not checked.
-BENT = "line loads bend it, and bending is not checked"
+BENT = "line loads bend it"
 
 
 @dataclass(frozen=True, eq=False)
@@ -120,7 +120,16 @@ def _check_group(standard: Standard, members: IndexArray, results: Results, chec
         clause = capacities.tension_clause if pulls[place] else capacities.compression_clause
         checked.governed_by[member] = f"{capacities.clauses[clause[place]]}, {names[strength[at[place]]]}"
         is_pushed, bent = bool(pushed.largest[place] > 0), bool(model.bent[member])
-        _give_verdict(checked, member, place, capacities, float(utilisation[place]), pushed=is_pushed, bent=bent)
+        _give_verdict(
+            checked,
+            member,
+            place,
+            capacities,
+            float(utilisation[place]),
+            pushed=is_pushed,
+            bent=bent,
+            limit=model.checks.slenderness_limit,
+        )
 
 
 @dataclass(frozen=True, eq=False)
@@ -183,17 +192,22 @@ def _give_verdict(
     *,
     pushed: bool,
     bent: bool,
+    limit: float,
 ) -> None:
-    fails = utilisation > FULL
+    slenderness = capacities.slenderness[place]
+    too_slender = pushed and slenderness > limit
+    fails = utilisation > FULL or too_slender
     checked.fails[member] = fails
     if bent and not fails:
         _skip(checked, member, BENT)
-        checked.verdicts[member] += f"; axial force alone takes {utilisation:.2f} of its capacity"
+        checked.verdicts[member] += f"; axial force alone takes {utilisation:.2f}"
         return
     words = [FAILS if fails else PASSES]
-    limit = capacities.slenderness_limit if pushed else capacities.tension_slenderness_limit
-    if pushed and limit is not None and capacities.slenderness[place] > limit[place]:
-        remark = f"slenderness {capacities.slenderness[place]:.0f} above the recommended {limit[place]:.0f}"
+    if too_slender:
+        words.append(f"slenderness {slenderness:.0f} above the limit {limit:g}")
+    recommended = capacities.slenderness_limit
+    if pushed and np.isnan(limit) and recommended is not None and slenderness > recommended[place]:
+        remark = f"slenderness {slenderness:.0f} above the recommended {recommended[place]:.0f}"
         words.append(remark)
         checked.remarks[member] = remark
     if place in capacities.assumptions:

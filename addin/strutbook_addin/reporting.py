@@ -85,6 +85,7 @@ def report_checks(results: Results, checked: CheckedMembers | None, workbook: Wo
         )
     if checked is None:
         return
+    _report_unknown_workings(results, workbook, findings)
     members = workbook.tables["Members"]
     names = results.model.geometry.members.names
     failing = np.flatnonzero(checked.fails)
@@ -94,7 +95,7 @@ def report_checks(results: Results, checked: CheckedMembers | None, workbook: Wo
             findings,
             member,
             "Utilisation",
-            f"member {names[member]} fails: {checked.utilisation[member]:.2f} of its capacity "
+            f"member {names[member]} {checked.verdicts[member]}: {checked.utilisation[member]:.2f} of its capacity "
             f"by {checked.governed_by[member]}.",
             "Use a larger section, or hold it at shorter buckling lengths.",
             Level.FAIL,
@@ -119,6 +120,17 @@ def report_checks(results: Results, checked: CheckedMembers | None, workbook: Wo
             f"member {names[where[0]]}: {remark}.",
             "Look whether that is acceptable.",
             Level.LOOK,
+        )
+
+
+def _report_unknown_workings(results: Results, workbook: Workbook, findings: Findings) -> None:
+    names = results.model.geometry.members.names
+    asked = [word.strip() for word in workbook.labels.texts.get("Workings for", "").replace(";", ",").split(",")]
+    unknown = [word for word in asked if word and word.casefold() != "worst" and word not in names]
+    if unknown:
+        what = f"there is no member {_listed(unknown)}, so nothing is worked out for it."
+        workbook.labels.report(
+            findings, "Workings for", what, "Write names of members with commas between them, or worst.", Level.LOOK
         )
 
 

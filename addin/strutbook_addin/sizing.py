@@ -229,7 +229,10 @@ def _pass_by(
     pulled, pushed = utilisations(capacities, forces, duration)
     used = np.maximum(pulled.largest, pushed.largest)
     fits = used <= FULL
-    if capacities.slenderness_limit is not None:
+    limit = model.checks.slenderness_limit
+    if not np.isnan(limit):
+        fits &= ~((pushed.largest > 0) & (capacities.slenderness > limit))
+    elif capacities.slenderness_limit is not None:
         fits &= ~((pushed.largest > 0) & (capacities.slenderness > capacities.slenderness_limit))
     by_candidate = (count, size_)
     passes = np.asarray(fits.reshape(by_candidate).all(axis=1))

@@ -10,7 +10,8 @@ import numpy as np
 from strutbook_addin.member_checks import CheckedMembers
 from strutbook_addin.results import Results
 from strutbook_addin.sheets import Written
-from strutbook_addin.tables.writing import DIGITS, ResultColumn
+from strutbook_addin.tables.list_sheets import DIGITS
+from strutbook_addin.tables.writing import ResultColumn
 
 if TYPE_CHECKING:
     from strutbook.checks.capacity import Step

@@ -39,6 +39,10 @@ _ROWS_SHOWN = 25
 _ROWS_TO_SPARE = 5
 #: Columns that hold whole sentences, and widths that show most of them in two lines.
 _SENTENCES = {"Where": 20.0, "What": 88.0, "What to do": 60.0}
+#: Other columns whose texts are longer than their kind usually is.
+_LONG = {"Governed by": 36.0, "Verdict": 58.0, "Designation": 20.0}
+#: Number formats of ratios.
+_RATIOS = {"Utilisation": "0.00", "Slenderness": "0", "Shear lag": "0.00", "K in": "0.00", "K out": "0.00"}
 #: Calc does not make rows higher for wrapped text when it opens a file, so these rows are ready for it.
 _FINDINGS_READY, _TWO_LINES = 40, 27
 #: Columns that are ready for results of combinations, or factors of cases.
@@ -121,7 +125,7 @@ def _dress_column(sheet: Worksheet, letter: str, column: Column, unit: str, titl
     below.font = look.CELL_FONT
     below.alignment = _alignment(column)
     if column.kind is Kind.NUMBER:
-        below.number_format = number_format(unit)
+        below.number_format = _RATIOS.get(column.name) or number_format(unit)
 
 
 def _dress_cell(cell: Cell, column: Column, unit: str) -> None:
@@ -130,7 +134,7 @@ def _dress_cell(cell: Cell, column: Column, unit: str) -> None:
     cell.fill = look.INPUT_FILL if column.role is Role.INPUT else look.RESULT_FILL
     cell.alignment = _alignment(column)
     if column.kind is Kind.NUMBER:
-        cell.number_format = number_format(unit)
+        cell.number_format = _RATIOS.get(column.name) or number_format(unit)
 
 
 def _alignment(column: Column) -> Alignment:
@@ -200,6 +204,8 @@ def _width(column: Column, title: str) -> float:
     """Width that shows the header in two lines and what usually stands below it."""
     if column.name in _SENTENCES:
         return _SENTENCES[column.name]
+    if column.name in _LONG:
+        return _LONG[column.name]
     # Programs break lines at a minus sign too, which would tear 1e-6/K apart.
     words = [title] if "-" in title else title.split()
     longest_word = max((len(word) for word in words), default=0)

@@ -9,6 +9,8 @@ from openpyxl.worksheet.worksheet import Worksheet
 from strutbook_templates.contents import Contents
 from strutbook_templates.sheet_frame import NOT_CHECKED_LINE
 
+#: Width of columns together, in characters, that still prints in a size that can be read.
+_READABLE = 260.0
 _PAPER = {"A4": 9, "Letter": 1}  # numbers of the paper sizes in the file format
 
 
@@ -16,7 +18,11 @@ def set_up_printing(sheet: Worksheet, contents: Contents, *, rows_repeated: int)
     """Page set-up of one sheet; `rows_repeated` rows stand at the top of each page (0 for none)."""
     sheet.page_setup.orientation = "landscape"
     sheet.page_setup.paperSize = _PAPER[contents.system.paper]
-    sheet.page_setup.fitToWidth = 1
+    # A table too wide to be read on one page takes two, its first column on both.
+    wide = sum(column.width for column in sheet.column_dimensions.values()) > _READABLE
+    sheet.page_setup.fitToWidth = 2 if wide else 1
+    if wide:
+        sheet.print_title_cols = "A:A"
     sheet.page_setup.fitToHeight = 0
     sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
     sheet.print_options.horizontalCentered = True

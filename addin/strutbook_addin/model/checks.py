@@ -26,6 +26,7 @@ class Checks:
     length_out: FloatArray  #: (members,) m
     net_area: FloatArray  #: (members,) m2
     shear_lag: FloatArray  #: (members,)
+    slenderness_limit: float  #: largest slenderness in compression, NaN for what the standard recommends
     deflection_limit: float  #: span over the largest deflection, NaN for no limit
     span: float  #: m, NaN for the largest distance between supports
 
@@ -51,6 +52,7 @@ def read_checks(members: TableData, labels: Labels, findings: Findings) -> Check
         length_out=members.number("Buckling length out"),
         net_area=members.number("Net area"),
         shear_lag=members.number("Shear lag"),
+        slenderness_limit=labels.numbers.get("Slenderness limit", nan),
         deflection_limit=labels.numbers.get("Deflection limit", nan),
         span=labels.numbers.get("Span", nan),
     )

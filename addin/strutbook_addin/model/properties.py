@@ -138,12 +138,13 @@ def _section_of_row(table: TableData, row: int, findings: Findings) -> Section |
                 what = f"the row states no area, and its name is no designation: {unknown}"
                 table.report(findings, row, "Area", what, "Fill in the area, or a designation.")
             return None
+    curve = table.text("Buckling curve")[row]
     if base is None:
-        return _general(name, area, radius_y, radius_z, radius_min)
+        return replace(_general(name, area, radius_y, radius_z, radius_min), buckling_curve=curve)
     area = base.area if np.isnan(area) else area
     stated = {"y": radius_y, "z": radius_z, "min": radius_min}
     moments = {f"second_moment_{axis}": area * radius**2 for axis, radius in stated.items() if not np.isnan(radius)}
-    return replace(base, name=name, area=area, **moments)  # type: ignore[arg-type]  # every field named is a float
+    return replace(base, name=name, area=area, buckling_curve=curve, **moments)  # type: ignore[arg-type]  # every field named is a float
 
 
 def _general(name: str, area: float, radius_y: float, radius_z: float, radius_min: float) -> Section:

@@ -12,6 +12,9 @@ from strutbook_addin.tables.schema import Table, normal
 from strutbook_addin.tables.units import Unit, UnitProblem, split_header, unit_of
 from strutbook_addin.tables.writing import ResultColumn, TableWriter, cells, header_text
 
+#: Significant digits of numbers in lists, which are there to be read.
+DIGITS = 6
+
 
 def fill_list(writer: TableWriter, table: Table, sheet: str, grid: Grid, columns: Sequence[ResultColumn]) -> None:
     """Write the columns of a list under their headers, in the units that stand there; what is below goes."""
@@ -25,7 +28,7 @@ def fill_list(writer: TableWriter, table: Table, sheet: str, grid: Grid, columns
         unit = _unit(result, grid, header_row, column, writer)
         values: list[list[Written]] = [[header_text(result.name, unit)]]
         if isinstance(result.values, np.ndarray):
-            values += [[value] for value in cells(result.values, unit)]
+            values += [[value] for value in cells(result.values, unit, DIGITS)]
         else:
             values += [[None if value == "" else value] for value in result.values]
         writer.write(sheet, header_row, column, values)

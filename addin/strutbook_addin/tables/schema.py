@@ -158,6 +158,12 @@ JOB = Table(
         ),
         _text("Workings for", "Members whose checks are written out on the sheet Workings, or the word worst."),
         _number(
+            "Slenderness limit",
+            None,
+            "Largest slenderness of a member in compression; blank is what the standard recommends, as a remark.",
+            bound=Bound.POSITIVE,
+        ),
+        _number(
             "Deflection limit",
             None,
             "The largest deflection may be the span divided by this number; blank is no limit.",
@@ -433,6 +439,12 @@ SECTIONS = Table(
             Dimension.LENGTH,
             "Smallest radius of gyration; blank takes the designation's, or the smaller of the other two.",
             bound=Bound.POSITIVE,
+        ),
+        Column(
+            "Buckling curve",
+            Kind.CHOICE,
+            "Buckling curve of EN 1993-1-1 table 6.2 for both axes; blank follows from the designation.",
+            choices=("a0", "a", "b", "c", "d"),
         ),
         _result("Area used", Dimension.AREA, "Area that the calculation used."),
         _result("Radius y used", Dimension.LENGTH, "Radius about y that the calculation used."),

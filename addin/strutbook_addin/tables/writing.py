@@ -96,12 +96,12 @@ def header_text(name: str, unit: Unit | None) -> str:
     return f"{name} [{unit.text}]" if unit else name
 
 
-def cells(values: FloatArray | Sequence[Written], unit: Unit | None) -> list[Written]:
+def cells(values: FloatArray | Sequence[Written], unit: Unit | None, digits: int = DIGITS) -> list[Written]:
     """Values as they are written: in the unit of the header, without noise, nothing for NaN."""
     if not isinstance(values, np.ndarray):
         return [value or None for value in values]
     in_unit = values / unit.factor if unit else values
-    return [None if number != number else float(f"{number:.{DIGITS}g}") + 0.0 for number in in_unit.tolist()]
+    return [None if number != number else float(f"{number:.{digits}g}") + 0.0 for number in in_unit.tolist()]
 
 
 def last_used_column(layout: Layout, grid: Grid) -> int:

@@ -7,7 +7,7 @@ from dataclasses import dataclass, field
 from html import escape
 from xml.parsers import expat
 
-from strutbook_addin.sheets import Written
+from strutbook_addin.sheets import Formula, Written
 from strutbook_addin.xlsx.book_part import BookPart
 from strutbook_addin.xlsx.doctypes import forbidden_doctype
 from strutbook_addin.xlsx.markup import (
@@ -200,12 +200,26 @@ def _sheet_bytes(book: BookPart, values: Mapping[tuple[int, int], Written]) -> b
     """A new worksheet part, in the namespace of the workbook."""
     namespace = book.root.tag.partition("}")[0].lstrip("{")
     assert namespace in MAIN_NAMESPACES  # noqa: S101 - read_book_part refuses any other
+    columns = "".join(
+        f'<col min="{column + 1}" max="{column + 1}" width="{width}" customWidth="1"/>'
+        for column, width in _widths(values).items()
+    )
     empty = (
         '<?xml version="1.0" encoding="UTF-8" standalone="yes"?>\n'
         f'<worksheet xmlns="{namespace}"><sheetFormatPr defaultColWidth="16" defaultRowHeight="15"/>'
-        "<sheetData/></worksheet>"
+        f"{f'<cols>{columns}</cols>' if columns else ''}<sheetData/></worksheet>"
     )
     return patched(scan(empty.encode(), "new sheet"), values)
+
+
+def _widths(values: Mapping[tuple[int, int], Written]) -> dict[int, int]:
+    """Width of each column, in characters, that shows its texts; numbers shorten themselves."""
+    widths: dict[int, int] = {}
+    for (_, column), value in values.items():
+        text = value.value if isinstance(value, Formula) else value
+        if isinstance(text, str):
+            widths[column] = max(widths.get(column, 12), min(len(text) + 2, 70))
+    return dict(sorted(widths.items()))
 
 
 def _prefix(name: str) -> str:
