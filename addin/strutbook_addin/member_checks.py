@@ -205,8 +205,8 @@ def _give_verdict(
     words = [FAILS if fails else PASSES]
     if too_slender:
         words.append(f"slenderness {slenderness:.0f} above the limit {limit:g}")
-    recommended = capacities.slenderness_limit
-    if pushed and np.isnan(limit) and recommended is not None and slenderness > recommended[place]:
+    recommended = capacities.slenderness_limit if pushed else capacities.tension_slenderness_limit
+    if np.isnan(limit) and recommended is not None and slenderness > recommended[place]:
         remark = f"slenderness {slenderness:.0f} above the recommended {recommended[place]:.0f}"
         words.append(remark)
         checked.remarks[member] = remark

@@ -258,3 +258,28 @@ def test_factors_of_en_1990():
 
 def test_euler_load_of_the_chord():
     assert euler_load(np.array(210e9), np.array(11770e-8), np.array(8.504)) / 1e3 == pytest.approx(3373, abs=1)
+
+
+def test_published_columns_come_out_of_a_workbook(make_book):
+    """The slender HSS by AISC 360-10, and the chord of class 4 by EN 1993-1-1, typed into tables."""
+    book = make_book(
+        {
+            "Joints": [["Joint", "x [m]", "y [m]"], ["A", 0, 0], ["B", 24 * 0.3048, 0], ["C", 8.504, 3], ["D", 0, 3]],
+            "Members": [
+                ["Member", "From", "To", "Section", "Material", "Standard", "Buckling length out [m]"],
+                ["HSS", "A", "B", "HSS 12x8x3/16", "A500 Gr. B", "AISC 360-10 LRFD", None],
+                ["IPE", "D", "C", "IPE 330", "S355", "EN 1993-1-1", 1.936],
+            ],
+            "Supports": [["Joint", "Holds"], ["A", "x y"], ["B", "y"], ["D", "x y"], ["C", "y"]],
+            "Loads": [["Joint", "Fx [kN]"], ["B", -10], ["C", -1477]],
+        }
+    )
+    assert book.solve().exit_status == 0, book.findings("stop")
+    capacity = book.column("Members", "Member", "Compression capacity [kN]")
+    published, _ = rows("BA08")["360-10 phiPn"]
+    assert -capacity["HSS"] * 1e3 / KIP == pytest.approx(published, abs=0.5)
+    published, _ = rows("BE02")["Nb,Rd z (in plane) kN"]
+    assert -capacity["IPE"] == pytest.approx(published, abs=1)
+    utilisation = book.column("Members", "Member", "Utilisation")
+    published, tolerance = rows("BE02")["utilisation z"]
+    assert utilisation["IPE"] == pytest.approx(published, abs=max(tolerance, 1e-3))
