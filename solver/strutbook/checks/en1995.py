@@ -11,8 +11,9 @@ import numpy as np
 
 from strutbook.arrays import FloatArray, IntArray
 from strutbook.checks.capacity import Capacities, MembersToCheck, Step
-from strutbook.materials.material import Material, Substance
-from strutbook.sections.section import Product, Shape
+from strutbook.checks.strengths import timber_missing
+from strutbook.materials.material import Material
+from strutbook.sections.section import Product
 
 #: Table 2.1: load-duration classes, the longest first.
 DURATIONS = ("permanent", "long-term", "medium-term", "short-term", "instantaneous")
@@ -103,7 +104,7 @@ def capacities(
         least = np.minimum(*k_c)
         f_c_d = design_strength(k_mod, f_c[:, np.newaxis], gamma)
         compression = least[:, np.newaxis] * area[:, np.newaxis] * f_c_d
-    missing = _missing(members, materials, material)
+    missing = timber_missing(members, materials, material, "f_t_0_k", "characteristic values of EN 338 or EN 14080")
     tension[list(missing)] = compression[list(missing)] = np.nan
     clause = np.where(least >= 1, 1, np.where(k_c[0] <= k_c[1], 2, 3))
     steps = (
@@ -134,18 +135,3 @@ def capacities(
         dict.fromkeys(range(count), f"service class {options.service_class}"),
         steps=steps,
     )
-
-
-def _missing(members: MembersToCheck, materials: tuple[Material, ...], material: IntArray) -> dict[int, str]:
-    found: dict[int, str] = {}
-    timber = members.having(Shape.TIMBER)
-    for member, place in enumerate(material.tolist()):
-        if place < 0:
-            found[member] = "no material is named"
-        elif materials[place].substance is not Substance.TIMBER:
-            found[member] = f"{materials[place].name} is not a timber, for which this standard is written"
-        elif "f_t_0_k" not in materials[place].values:
-            found[member] = f"{materials[place].name} has no characteristic values of EN 338 or EN 14080"
-        elif not timber[member]:
-            found[member] = f"{members.sections[members.section[member]].name} is no rectangle of timber"
-    return found

@@ -13,8 +13,9 @@ import numpy as np
 
 from strutbook.arrays import FloatArray, IntArray
 from strutbook.checks.capacity import Capacities, MembersToCheck, Step
-from strutbook.materials.material import Material, Substance
-from strutbook.sections.section import Product, Shape
+from strutbook.checks.strengths import timber_missing
+from strutbook.materials.material import Material
+from strutbook.sections.section import Product
 
 _INCH = 0.0254
 #: Table 2.3.2: load durations, the longest first, and their factors C_D.
@@ -107,7 +108,7 @@ def capacities(
         tension = net_area[:, np.newaxis] * tensile
         compression = area[:, np.newaxis] * stability * starred
         slender = slenderness > LARGEST_SLENDERNESS
-    missing = _missing(members, materials, material)
+    missing = timber_missing(members, materials, material, "F_t", "reference values of the NDS Supplement")
     no_compression = {
         **{
             int(member): f"its slenderness l_e/d is above {LARGEST_SLENDERNESS:g} (3.7.1.4)"
@@ -138,18 +139,3 @@ def capacities(
         slenderness_limit=np.full(count, LARGEST_SLENDERNESS),
         steps=steps,
     )
-
-
-def _missing(members: MembersToCheck, materials: tuple[Material, ...], material: IntArray) -> dict[int, str]:
-    found: dict[int, str] = {}
-    timber = members.having(Shape.TIMBER)
-    for member, place in enumerate(material.tolist()):
-        if place < 0:
-            found[member] = "no material is named"
-        elif materials[place].substance is not Substance.TIMBER:
-            found[member] = f"{materials[place].name} is not a timber, for which this standard is written"
-        elif "F_t" not in materials[place].values:
-            found[member] = f"{materials[place].name} has no reference values of the NDS Supplement"
-        elif not timber[member]:
-            found[member] = f"{members.sections[members.section[member]].name} is no rectangle of timber"
-    return found

@@ -1,4 +1,4 @@
-"""Yield and ultimate strength of every member, by its material and the thickness of its section."""
+"""Strengths of every member, by its material and the thickness of its section, and why there are none."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ import numpy as np
 from strutbook.arrays import FloatArray, IntArray
 from strutbook.checks.capacity import MembersToCheck
 from strutbook.materials.material import Material, Substance
-from strutbook.sections.section import Section
+from strutbook.sections.section import Section, Shape
 
 #: Dimensions that are thicknesses of parts.
 _PARTS = ("flange", "web", "wall", "thickness")
@@ -57,3 +57,24 @@ def _strength(section: Section, material: Material | None) -> tuple[float, float
     except ValueError as too_thick:
         return str(too_thick)
     return step.yield_strength, step.ultimate_strength, material.elastic_modulus
+
+
+def timber_missing(
+    members: MembersToCheck, materials: tuple[Material, ...], material: IntArray, value: str, words: str
+) -> dict[int, str]:
+    """Members that a timber standard cannot check, and why: no timber, no rectangle, or values of another standard.
+
+    `value` is a key of the material's values that the standard needs, `words` what such values are called.
+    """
+    found: dict[int, str] = {}
+    timber = members.having(Shape.TIMBER)
+    for member, place in enumerate(material.tolist()):
+        if place < 0:
+            found[member] = "no material is named"
+        elif materials[place].substance is not Substance.TIMBER:
+            found[member] = f"{materials[place].name} is not a timber, for which this standard is written"
+        elif value not in materials[place].values:
+            found[member] = f"{materials[place].name} has no {words}"
+        elif not timber[member]:
+            found[member] = f"{members.sections[members.section[member]].name} is no rectangle of timber"
+    return found
