@@ -31,7 +31,7 @@ def digest(tables: dict[str, TableData], labels: Labels) -> str:
             hashed.update(f"<{header}>".encode())
             hashed.update((data.open_numbers[header] + 0.0).tobytes())
     # Labels that change what is checked; a blank one leaves the digest as it is without the label.
-    for name in ("Standard", "Slenderness limit", "Deflection limit", "Span"):
+    for name in ("Standard", "Factors", "Slenderness limit", "Deflection limit", "Span"):
         value = labels.texts.get(name, "") or labels.numbers.get(name)
         if value:
             hashed.update(f"<{JOB.sheet}: {name}={value!r}>".encode())

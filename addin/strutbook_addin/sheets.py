@@ -55,6 +55,10 @@ class Refusal:
 LINK = "HYPERLINK(\"#'"
 
 
+#: How a live formula of workings begins: adding nothing marks it as ours, so that the next run may write over it.
+LIVE = "N(0)+"
+
+
 class Sheets(Protocol):
     """The spreadsheet as a run sees it."""
 
@@ -89,7 +93,7 @@ def is_ours(formula: str) -> bool:
     >>> is_ours("HYPERLINK(\"#'Joints'!B3\",\"Joints!B3\")"), is_ours("=SUM(B3:B9)")
     (True, False)
     """
-    return formula.removeprefix("=").startswith(LINK)
+    return formula.removeprefix("=").startswith((LINK, LIVE))
 
 
 @lru_cache(maxsize=4096)

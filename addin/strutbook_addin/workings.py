@@ -9,7 +9,7 @@ import numpy as np
 
 from strutbook_addin.member_checks import CheckedMembers
 from strutbook_addin.results import Results
-from strutbook_addin.sheets import Written
+from strutbook_addin.sheets import LIVE, Formula, Written, cell_name
 from strutbook_addin.tables.list_sheets import DIGITS
 from strutbook_addin.tables.writing import ResultColumn
 
@@ -23,8 +23,16 @@ WORST = "worst"
 _SHOWN = {"N": ("kN", 1e3), "m": ("mm", 1e-3), "m2": ("mm2", 1e-6), "Pa": ("N/mm2", 1e6), "": ("", 1.0)}
 
 
-def workings_columns(results: Results, checked: CheckedMembers, asked: str) -> list[ResultColumn]:
-    """Lines of the workings of the members that are asked for: names with commas between them, or `worst`."""
+COLUMNS = ("Member", "Clause", "Symbol", "Meaning", "Value", "Unit", "By")
+
+
+def workings_columns(
+    results: Results, checked: CheckedMembers, asked: str, header_row: int, value_column: int
+) -> list[ResultColumn]:
+    """Lines of the workings of the members that are asked for: names with commas between them, or `worst`.
+
+    `header_row` and `value_column` say where the list stands, so that values can refer to each other.
+    """
     names = results.model.geometry.members.names
     wanted = [word.strip() for word in re.split(r"[,;]", asked)]
     members = [names.index(word) for word in wanted if word in names]
@@ -32,12 +40,13 @@ def workings_columns(results: Results, checked: CheckedMembers, asked: str) -> l
         members.append(checked.largest)
     lines: list[tuple[Written, ...]] = []
     for member in dict.fromkeys(members):
-        lines += _lines(member, results, checked)
-    columns = ("Member", "Clause", "Symbol", "Meaning", "Value", "Unit", "By")
-    return [ResultColumn(name, [line[place] for line in lines]) for place, name in enumerate(columns)]
+        lines += _lines(member, results, checked, header_row + 1 + len(lines), value_column)
+    return [ResultColumn(name, [line[place] for line in lines]) for place, name in enumerate(COLUMNS)]
 
 
-def _lines(member: int, results: Results, checked: CheckedMembers) -> list[tuple[Written, ...]]:
+def _lines(
+    member: int, results: Results, checked: CheckedMembers, first_row: int, value_column: int
+) -> list[tuple[Written, ...]]:
     name = results.model.geometry.members.names[member]
     lines: list[tuple[Written, ...]] = []
     for standard, members, capacities in checked.groups:
@@ -45,16 +54,42 @@ def _lines(member: int, results: Results, checked: CheckedMembers) -> list[tuple
         if not len(places):
             continue
         place = int(places[0])
+        known: dict[str, tuple[str, float]] = {}
         for step in capacities.steps:
-            for label, value in _values(step, standard, place):
+            values = _values(step, standard, place)
+            for label, value in values:
                 shown, factor = _SHOWN[step.unit]
                 number = float(f"{value / factor:.{DIGITS}g}")
-                meaning = f"{step.meaning}{label}"
-                lines.append(
-                    (name, f"{standard.name} {step.clause}", step.symbol, meaning, number, shown, step.formula)
-                )
+                cell = cell_name(first_row + len(lines), value_column)
+                live = _live(step.formula, known, number) if len(values) == 1 else None
+                clause, meaning = f"{standard.name} {step.clause}", f"{step.meaning}{label}"
+                lines.append((name, clause, step.symbol, meaning, live or number, shown, step.formula))
+                if len(values) == 1:
+                    known[step.symbol] = (cell, number)
         lines.append((name, "", "", checked.verdicts[member], None, "", ""))
     return lines
+
+
+def _live(formula: str, known: dict[str, tuple[str, float]], number: float) -> Formula | None:
+    """Live formula of products and quotients of values that stand above; None where it is not so simple.
+
+    >>> _live("A * f_y / gamma", {"A": ("E2", 873.0), "f_y": ("E3", 355.0), "gamma": ("E4", 1.0)}, 309.915).text
+    '=N(0)+E2*E3/E4*0.001'
+    """
+    words = formula.split()
+    symbols, operators = words[::2], words[1::2]
+    if not words or not set(operators) <= {"*", "/"} or not all(symbol in known for symbol in symbols):
+        return None
+    text, product = known[symbols[0]]
+    for operator, symbol in zip(operators, symbols[1:], strict=True):
+        cell, value = known[symbol]
+        text += operator + cell
+        product = product * value if operator == "*" else product / value
+    # Values stand in units of their own; what is left is a power of ten, or the formula says less than the value.
+    factor = float(f"{number / product:.3g}") if product else 0.0
+    if factor not in (1.0, 1e-3, 1e-6, 1e3, 1e6):
+        return None
+    return Formula(f"={LIVE}{text}" + ("" if factor == 1 else f"*{factor:g}"), number)
 
 
 def _values(step: Step, standard: Standard, place: int) -> list[tuple[str, float]]:

@@ -15,7 +15,7 @@ from strutbook_addin.results import Results
 from strutbook_addin.sheets import LINK, CellValue, Formula, Grid, Sheets, Written
 from strutbook_addin.tables.headers import Layout
 from strutbook_addin.tables.labels import VALUES, label_rows
-from strutbook_addin.tables.list_sheets import clear_list, fill_list
+from strutbook_addin.tables.list_sheets import clear_list, fill_list, list_layout
 from strutbook_addin.tables.result_sheets import clear_sheet, fill_sheet, result_layout
 from strutbook_addin.tables.schema import (
     BILL,
@@ -135,9 +135,10 @@ def _write_lists(
 
             columns = bill_columns(results)
         if results is not None and checked is not None and table is WORKINGS and asked:
-            from strutbook_addin.workings import workings_columns
+            from strutbook_addin.workings import COLUMNS, workings_columns
 
-            columns = workings_columns(results, checked, asked)
+            header_row, places = list_layout(WORKINGS, workbook.grids.get(WORKINGS.sheet, []), COLUMNS)
+            columns = workings_columns(results, checked, asked, header_row, places["Value"])
         if columns:
             write_list(writer, table, columns, workbook)
         elif table.sheet in workbook.names:

@@ -199,3 +199,36 @@ def _labels(book):
     import openpyxl
 
     return list(openpyxl.load_workbook(book.path, data_only=True)["Job"].iter_rows(values_only=True))
+
+
+def test_factors_of_the_job_go_before_the_recommended_ones(strut, make_book):
+    book = make_book(strut)
+    book.solve()
+    recommended = member(book)["Compression capacity [kN]"]
+    strut["Job"].append(["Factors", "gamma_M1 = 1.1"])
+    national = make_book(strut, "national.xlsx")
+    national.solve()
+    assert member(national)["Compression capacity [kN]"] == pytest.approx(recommended / 1.1)
+
+
+@pytest.mark.parametrize(
+    ("text", "sentence"),
+    [
+        ("gamma_M7 = 1.1", "EN 1993-1-1 has no factor gamma_M7; it has gamma_m0, gamma_m1, gamma_m2."),
+        ("gamma_M1 1.1", "expected name = number, found 'gamma_M1 1.1'."),
+        ("gamma_M1 = x", "expected name = number, found 'gamma_M1'."),
+        ("gamma_M1 = -1", "the factor gamma_M1 is -1; expected a number above 0."),
+    ],
+)
+def test_factors_that_mean_nothing_are_told(strut, make_book, text, sentence):
+    strut["Job"].append(["Factors", text])
+    book = make_book(strut)
+    assert book.solve().exit_status == 2
+    assert sentence in book.findings(Level.STOP)[0].what
+
+
+def test_slenderness_limit_of_the_job_fails_what_exceeds_it(strut, make_book):
+    strut["Job"].append(["Slenderness limit", 90])
+    book = make_book(strut)
+    assert book.solve().exit_status == 1
+    assert member(book)["Verdict"] == "fails; slenderness 101 above the limit 90"

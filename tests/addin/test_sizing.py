@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import openpyxl
 import pytest
 
 from strutbook_addin.command_line import main
@@ -157,6 +158,14 @@ def test_bill_and_workings_are_written_when_they_are_asked_for(frame, make_book)
     chi, area, strength = (by_symbol[symbol]["Value"] for symbol in ("chi_y", "A_eff", "f_y"))
     assert by_symbol["N_b,Rd,y"]["Value"] == pytest.approx(chi * area * strength / 1e3, rel=1e-4)
     assert by_symbol["chi_y"]["Clause"] == "EN 1993-1-1 6.3.1.2(1)"
+    # Simple formulas are live, and a later run writes over them.
+    assert any(str(value).startswith("=N(0)+E") for value in live_values(book))
+    assert book.solve().exit_status == 0
+    assert not book.findings("look")
+
+
+def live_values(book):
+    return [cell.value for cell in openpyxl.load_workbook(book.path)["Workings"]["E"]]
 
 
 def test_workings_go_when_nobody_asks_for_them_any_more(frame, make_book):

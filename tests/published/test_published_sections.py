@@ -49,3 +49,42 @@ def test_published_property_is_reproduced(case, units, row):
     else:
         value = lengths[quantity] / unit
     assert value == pytest.approx(float(row["published"]), abs=row["tol"])
+
+
+def test_published_sections_come_out_of_a_workbook(make_book):
+    """Areas and radii of tubes and angles on the sheet Sections, in cm as the tables print them."""
+    printed: dict[str, dict[str, dict[str, float]]] = {}
+    for case, units, row in ROWS:
+        if units.startswith("cm") and case in {"C01", "C04"}:
+            name, quantity = row["q"].rsplit(" ", 1)
+            printed.setdefault(name, {})[quantity] = row
+    book = make_book(
+        {
+            "Joints": [["Joint", "x [m]", "y [m]"], *([f"J{place}", place, 0] for place in range(len(printed) + 1))],
+            "Members": [
+                ["Member", "From", "To", "Section", "Material"],
+                *([name, f"J{place}", f"J{place + 1}", name, "S355"] for place, name in enumerate(printed)),
+            ],
+            "Supports": [["Joint", "Holds"], *([f"J{place}", "x y"] for place in range(len(printed) + 1))],
+            "Loads": [["Joint", "Fx [kN]"]],
+            "Sections": [
+                ["Section", "Designation", "Area used [cm2]", "Radius y used [cm]", "Radius min used [cm]"],
+                *([name, name] for name in printed),
+            ],
+        }
+    )
+    assert book.solve().exit_status == 0, book.findings("stop")
+    found = {row["Section"]: row for row in book.rows("Sections", "Section")}
+    compared = 0
+    for name, rows in printed.items():
+        for quantity, header in (
+            ("A", "Area used [cm2]"),
+            ("i", "Radius y used [cm]"),
+            ("ix", "Radius y used [cm]"),
+            ("iv", "Radius min used [cm]"),
+        ):
+            if quantity in rows:
+                expected = pytest.approx(float(rows[quantity]["published"]), abs=rows[quantity]["tol"])
+                assert found[name][header] == expected, f"{name} {quantity}"
+                compared += 1
+    assert compared >= 20

@@ -38,7 +38,7 @@ def read_checks(members: TableData, labels: Labels, findings: Findings) -> Check
     default = labels.texts.get("Standard", "")
     found: dict[str, Standard | None] = {"": None}
     if default:
-        found[""] = _standard(default, findings, labels=labels)
+        found[""] = _with_factors(_standard(default, findings, labels=labels), labels, findings)
     standards: list[Standard | None] = []
     for row, name in enumerate(names):
         if name not in found:
@@ -68,6 +68,32 @@ def largest_distance(points: FloatArray) -> float:
         return 0.0
     apart = points[:, np.newaxis] - points[np.newaxis]
     return float(np.sqrt((apart * apart).sum(axis=2)).max())
+
+
+def _with_factors(standard: Standard | None, labels: Labels, findings: Findings) -> Standard | None:
+    """The standard of the job with the factors that the job sets; those of single members keep theirs."""
+    text = labels.texts.get("Factors", "")
+    if standard is None or not text:
+        return standard
+    from strutbook.checks.registry import UnknownFactor
+
+    given: dict[str, float] = {}
+    for part in text.replace(",", ";").split(";"):
+        name, sign, value = part.partition("=")
+        try:
+            given[name.strip()] = float(value) if sign else float("nan")
+        except ValueError:
+            given[name.strip()] = float("nan")
+    todo = f"{standard.name} takes: " + (", ".join(f"{k} = {v:g}" for k, v in standard.factors.items()) or "none") + "."
+    wrong = [name for name, value in given.items() if value != value]
+    if wrong:
+        labels.report(findings, "Factors", f"expected name = number, found {wrong[0]!r}.", todo)
+        return standard
+    try:
+        return standard.with_factors(given)
+    except UnknownFactor as unknown:
+        labels.report(findings, "Factors", f"{unknown}", todo)
+        return standard
 
 
 def _standard(

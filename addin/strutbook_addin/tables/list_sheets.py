@@ -18,13 +18,9 @@ DIGITS = 6
 
 def fill_list(writer: TableWriter, table: Table, sheet: str, grid: Grid, columns: Sequence[ResultColumn]) -> None:
     """Write the columns of a list under their headers, in the units that stand there; what is below goes."""
-    header_row = _header_row(table, grid)
-    places = _places(table, grid, header_row)
-    spare = max([-1, *places.values(), *(len(row) - 1 for row in grid[header_row : header_row + 1])]) + 1
+    header_row, places = list_layout(table, grid, [result.name for result in columns])
     for result in columns:
-        column = places.get(result.name)
-        if column is None:
-            column, spare = spare, spare + 1
+        column = places[result.name]
         unit = _unit(result, grid, header_row, column, writer)
         values: list[list[Written]] = [[header_text(result.name, unit)]]
         if isinstance(result.values, np.ndarray):
@@ -34,6 +30,17 @@ def fill_list(writer: TableWriter, table: Table, sheet: str, grid: Grid, columns
         writer.write(sheet, header_row, column, values)
         below = header_row + len(values)
         writer.clear(sheet, below, column, len(grid) - below)
+
+
+def list_layout(table: Table, grid: Grid, names: Sequence[str]) -> tuple[int, dict[str, int]]:
+    """Header row of a list and the column of each name: where it stands already, or behind what is there."""
+    header_row = _header_row(table, grid)
+    places = _places(table, grid, header_row)
+    spare = max([-1, *places.values(), *(len(row) - 1 for row in grid[header_row : header_row + 1])]) + 1
+    for name in names:
+        if name not in places:
+            places[name], spare = spare, spare + 1
+    return header_row, places
 
 
 def clear_list(writer: TableWriter, table: Table, sheet: str, grid: Grid) -> None:

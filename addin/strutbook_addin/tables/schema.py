@@ -153,6 +153,10 @@ JOB = Table(
         _text("Date", "Date of the calculation."),
         _text("Standard", "Standard to which members are checked; blank checks none."),
         _text(
+            "Factors",
+            "Factors of the standard in place of the recommended ones, such as gamma_M1 = 1.1; gamma_M2 = 1.25.",
+        ),
+        _text(
             "Combination rule",
             "Rule that fills an empty sheet Combinations from the natures of the cases; blank fills nothing in.",
         ),

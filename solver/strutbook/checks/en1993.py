@@ -169,7 +169,15 @@ def capacities(
         no_tension,
         no_compression,
         {int(member): assumed for member in np.flatnonzero(members.having(Shape.DOUBLE_ANGLE))},
-        steps=(*tension_steps, *parts_steps, *steps),
+        steps=(*_factors(options, len(members.section)), *tension_steps, *parts_steps, *steps),
+    )
+
+
+def _factors(options: Options, count: int) -> tuple[Step, ...]:
+    """6.1(1): the partial factors that were used."""
+    return tuple(
+        Step(f"gamma_M{place}", "partial factor", "6.1(1)", "", np.full(count, value))
+        for place, value in enumerate((options.gamma_m0, options.gamma_m1, options.gamma_m2))
     )
 
 
@@ -310,7 +318,14 @@ def _compression(
                 Step(f"lambda_{axis}", f"non-dimensional slenderness, about {axis}", "6.3.1.3(1)", "", relative[place]),
                 Step(f"alpha_{axis}", f"imperfection factor, about {axis}", "table 6.1", "", factor),
                 Step(f"chi_{axis}", f"reduction factor, about {axis}", "6.3.1.2(1)", "", chi[place]),
-                Step(f"N_b,Rd,{axis}", f"buckling resistance, about {axis}", "6.3.1.1(3)", "N", resistances[1 + place]),
+                Step(
+                    f"N_b,Rd,{axis}",
+                    f"buckling resistance, about {axis}",
+                    "6.3.1.1(3)",
+                    "N",
+                    resistances[1 + place],
+                    f"chi_{axis} * A_eff * f_y / gamma_M1",
+                ),
             )
         ),
         Step("lambda_v", "effective slenderness of an angle", "BB.1.2(2)", "", np.where(angle, relative[2], np.nan)),

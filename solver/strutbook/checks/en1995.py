@@ -42,10 +42,15 @@ _BETA_C = {Product.SAWN: 0.2, Product.GLUED_LAMINATED: 0.1}
 class Options:
     """National values and choices."""
 
+    #: 2.3.1.3: 1, 2 or 3
     service_class: int = 1
     #: table 2.3, recommended values
     gamma_m_solid: float = 1.30
     gamma_m_glued: float = 1.25
+
+    def __post_init__(self) -> None:
+        if self.service_class not in K_MOD:
+            raise ValueError(f"the service class is {self.service_class}; expected 1, 2 or 3.")
 
 
 def size_factor(depth: FloatArray, glued: FloatArray) -> FloatArray:
