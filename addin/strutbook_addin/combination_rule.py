@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 from strutbook_addin.findings import Findings, Level
 from strutbook_addin.model.combinations import Cases, read_cases
 from strutbook_addin.sheets import CellValue, Grid
-from strutbook_addin.tables.headers import Layout, name_text, nearest
+from strutbook_addin.tables.headers import Layout, is_blank, name_text, nearest
 from strutbook_addin.tables.reading import read_table
 from strutbook_addin.tables.schema import COMBINATIONS
 from strutbook_addin.workbook import Rows, Workbook
@@ -30,7 +30,9 @@ def with_generated_combinations(workbook: Workbook, findings: Findings) -> Workb
     """The workbook with the rows that its rule makes, where it names one and has no combinations yet."""
     name = workbook.labels.texts.get(LABEL, "")
     table = workbook.tables.get(COMBINATIONS.sheet)
-    if not name or (table is not None and table.rows):
+    present = workbook.grids.get(COMBINATIONS.sheet, [])
+    in_use = table.rows if table is not None else any(not is_blank(value) for row in present for value in row)
+    if not name or in_use:
         return workbook
     from strutbook.combinations import RULES, NatureNeeded
 
@@ -50,10 +52,8 @@ def with_generated_combinations(workbook: Workbook, findings: Findings) -> Workb
         _report_nature(needed.case, cases, workbook, findings)
         return workbook
     sheet = workbook.names.get(COMBINATIONS.sheet, COMBINATIONS.sheet)
-    rows = _rows(
-        generated, natures, sheet, workbook.grids.get(COMBINATIONS.sheet, []), None if table is None else table.layout
-    )
-    grid = _laid_over(workbook.grids.get(COMBINATIONS.sheet, []), rows)
+    rows = _rows(generated, natures, sheet, present, None if table is None else table.layout)
+    grid = _laid_over(present, rows)
     read = read_table(COMBINATIONS, sheet, grid, findings, set(natures))
     if read is None:
         return workbook
@@ -63,7 +63,13 @@ def with_generated_combinations(workbook: Workbook, findings: Findings) -> Workb
         "They are ordinary rows now: look through them, edit them, or clear them to have them made anew.",
         sheet=sheet,
     )
-    return replace(workbook, tables={**workbook.tables, COMBINATIONS.sheet: read}, filled_in=(rows,))
+    return replace(
+        workbook,
+        names={**workbook.names, COMBINATIONS.sheet: sheet},
+        grids={**workbook.grids, COMBINATIONS.sheet: grid},
+        tables={**workbook.tables, COMBINATIONS.sheet: read},
+        filled_in=(rows,),
+    )
 
 
 def _report_nature(case: str, cases: Cases, workbook: Workbook, findings: Findings) -> None:

@@ -17,13 +17,22 @@ from strutbook_addin.solving import solve_file
 
 #: Every table in use, so that anything can go wrong anywhere.
 FULL: dict[str, list[list[Any]]] = {
-    "Job": [["Title", "A triangle"], ["Reference", 7]],
+    "Job": [
+        ["Title", "A triangle"],
+        ["Reference", 7],
+        ["Standard", "EN 1993-1-1"],
+        ["Factors", "gamma_M1 = 1.1"],
+        ["Deflection limit", 200],
+        ["Span [m]", 8],
+        ["Workings for", "worst"],
+        ["Combination rule", "EN 1990 6.10"],
+    ],
     **TRIANGLE,
     "Members": [
-        ["Member", "From", "To", "Section", "Material", "Misfit [mm]"],
-        ["AB", "A", "B", "S1", "M1", 0],
-        ["AC", "A", "C", "S1", "M1", 0],
-        ["BC", "B", "C", "S1", "M1", 1],
+        ["Member", "From", "To", "Section", "Material", "Misfit [mm]", "Takes", "K in", "Standard", "Shear lag"],
+        ["AB", "A", "B", "S1", "M1", 0, "both", 1, None, None],
+        ["AC", "A", "C", "SHS 100x5", "S355", 0, None, 0.9, "AISC 360-22 LRFD", None],
+        ["BC", "B", "C", "L 60x60x6", "S355", 1, None, None, None, 0.8],
     ],
     "Member loads": [
         ["Case", "Member", "Per", "wx [kN/m]", "wy [kN/m]", "Temperature change [K]"],
@@ -32,10 +41,14 @@ FULL: dict[str, list[list[Any]]] = {
     "Settlements": [["Case", "Joint", "dx [mm]", "dy [mm]"], [None, "A", 0, -1]],
     "Cases": [["Case", "Nature", "Self weight"], ["Loads", "imposed", 1]],
     "Combinations": [["Combination", "For", "Loads"], ["C1", "strength", 1.5], ["C2", "service", 1]],
-    "Sections": [["Section", "Area [mm2]"], ["S1", 400]],
+    "Sections": [
+        ["Section", "Designation", "Area [mm2]", "Radius y [mm]", "Radius z [mm]", "Buckling curve"],
+        ["S1", None, 400, 20, 20, "c"],
+    ],
+    "Bill": [],
     "Materials": [
-        ["Material", "E [GPa]", "Density [kg/m3]", "Expansion [1/K]"],
-        ["M1", 200, 7850, 1.2e-5],
+        ["Material", "E [GPa]", "Yield [MPa]", "Density [kg/m3]", "Expansion [1/K]"],
+        ["M1", 200, 300, 7850, 1.2e-5],
     ],
 }
 
@@ -58,7 +71,7 @@ WORDS = [
         "E [",
     ),
     *("Area [furlong]", "Fx", "Joint", "Member", "strength", "length", "A" * 300, "Δ"),
-    *("=1/0", "=A1", "=NONE(1)"),
+    *("=1/0", "=A1", "=NONE(1)", "SHS 100x5", "CHS 88.9x50", "IPE 200", "S355", "C24", "EN 1995-1-1", "worst", "d"),
 ]
 NUMBERS = [0, 1, -1, 1.5, 1e300, -1e300, 1e-300, 1e25, 1e-25, 12345678901234567, True, False]
 JUNK = st.sampled_from([None, dt.datetime(2024, 1, 1), dt.time(3, 4), *WORDS, *NUMBERS])
@@ -103,5 +116,5 @@ def test_no_input_is_a_fault_and_solving_again_says_the_same(tables):
         sentences = [finding.sentence for finding in solved.outcome.findings]
         assert not [sentence for sentence in sentences if "inside strutbook" in sentence]
         assert solved.exit_status == 2 or not solved.outcome.count(Level.STOP)
-        assert solved.exit_status == 0 or solved.outcome.count(Level.STOP)
+        assert solved.exit_status != 2 or solved.outcome.count(Level.STOP)
     assert first.exit_status == second.exit_status
