@@ -34,17 +34,18 @@ def run(sheets: Sheets, tell: Callable[[str], None] = silent) -> Outcome:
 
     `tell` is called with the name of each stage as it begins.
     """
-    outcome, workbook = _calculate(sheets, tell)
+    outcome, workbook = calculate(sheets, tell)
     tell("writing results")
     return write_results(sheets, outcome, workbook)
 
 
 def check(sheets: Sheets, tell: Callable[[str], None] = silent) -> Outcome:
     """Solve the workbook behind `sheets` and write nothing."""
-    return _calculate(sheets, tell)[0]
+    return calculate(sheets, tell)[0]
 
 
-def _calculate(sheets: Sheets, tell: Callable[[str], None]) -> tuple[Outcome, Workbook]:
+def calculate(sheets: Sheets, tell: Callable[[str], None] = silent) -> tuple[Outcome, Workbook]:
+    """Read and solve the workbook behind `sheets`: what was found, and the tables from which it follows."""
     findings = Findings()
     tell("reading tables")
     workbook = with_generated_combinations(read_workbook(sheets, findings), findings)

@@ -24,6 +24,7 @@ VERBS = {
     "new": "start a workbook: blank, or a truss of a usual shape",
     "solve": "solve workbooks and write the results into them",
     "size": "find the lightest sections, by group, with which everything passes",
+    "batch": "solve every workbook of a folder tree, in parallel, and write one summary",
 }
 
 

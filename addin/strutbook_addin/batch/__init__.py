@@ -1,0 +1,1 @@
+"""Folders of workbooks: every one solved, in parallel, and one summary."""
