@@ -102,6 +102,8 @@ def _fill_summary(sheet: Worksheet, records: Sequence[Record], folder: Path) -> 
             cell.value = value  # type: ignore[assignment]  # texts, numbers and None only
             if isinstance(value, str) and value.startswith("="):
                 cell.data_type = "s"
+            if isinstance(value, float) and header != "Seconds":
+                cell.number_format = "0.00"
         file = by_name[str(row["Workbook"])].file
         sheet.cell(place, 1).hyperlink = Path(os.path.relpath(file, folder)).as_posix()
     if table:
@@ -196,12 +198,18 @@ def _fill_findings(sheet: Worksheet, records: Sequence[Record]) -> None:
 def _write_headers(sheet: Worksheet, headers: Sequence[str]) -> None:
     from openpyxl.styles import Alignment, Font
     from openpyxl.utils import get_column_letter
+    from openpyxl.worksheet.properties import PageSetupProperties
 
     for column, header in enumerate(headers, start=1):
         cell = sheet.cell(1, column)
         cell.value = header
-        cell.font = Font(bold=True)
+        cell.font = Font(name="Calibri", size=11, bold=True)
         cell.alignment = Alignment(wrap_text=True, vertical="top")
         width = _WIDTHS.get(header.strip(), max(12, len(header) * 0.75))
         sheet.column_dimensions[get_column_letter(column)].width = width
+    sheet.row_dimensions[1].height = 32
     sheet.freeze_panes = "B2"
+    sheet.page_setup.orientation = "landscape"
+    sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
+    sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
+    sheet.print_title_rows = "1:1"
