@@ -32,6 +32,8 @@ COLUMNS: tuple[tuple[str, str, float], ...] = (
     ("Mass [kg]", "mass", 1.0),
     ("Members", "members", 1.0),
 )
+#: Numbers that are counts.
+_COUNTS = frozenset({"fails", "unchecked", "members"})
 _WIDTHS = {"Workbook": 34, "Outcome": 60, "Governed by": 34, "First finding": 90, "What": 90, "What to do": 60}
 _TEAL, _AMBER = "1F6F78", "F2B33D"
 
@@ -80,7 +82,9 @@ def _value(record: Record, key: str, factor: float) -> object:
     if not factor:
         return record.texts.get(key)
     number = record.numbers.get(key)
-    return None if number is None else round(number / factor, 4)
+    if number is None:
+        return None
+    return int(number) if key in _COUNTS else round(number / factor, 4)
 
 
 def _fill_summary(sheet: Worksheet, records: Sequence[Record], folder: Path) -> None:
@@ -210,6 +214,6 @@ def _write_headers(sheet: Worksheet, headers: Sequence[str]) -> None:
     sheet.row_dimensions[1].height = 32
     sheet.freeze_panes = "B2"
     sheet.page_setup.orientation = "landscape"
-    sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
+    sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 2, 0
     sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
-    sheet.print_title_rows = "1:1"
+    sheet.print_title_rows, sheet.print_title_cols = "1:1", "A:A"
